@@ -1,0 +1,193 @@
+#include "tambour/stack_study.hpp"
+
+#include <fmt/format.h>
+
+#include <algorithm>
+#include <cmath>
+
+#include "base/check.hpp"
+
+namespace tambour {
+namespace {
+
+constexpr std::size_t images_per_worker = 16;
+
+/// (power of the orders n >= 1 above noise) / (noise in them).
+double signal_to_noise(const std::vector<OrderPower>& spectrum) {
+  double power = 0, noise = 0;
+  for (const OrderPower& order : spectrum) {
+    if (order.angular_order < 1) continue;
+    power += order.power;
+    noise += order.noise_power;
+  }
+  return noise > 0 ? std::max(power / noise, 0.0) : 0;
+}
+
+}  // namespace
+
+std::vector<std::string> StackStudyOptions::problems() const {
+  std::vector<std::string> found = geometry.problems();
+  if (test_symmetry)
+    for (std::string& problem : symmetry.problems()) found.push_back(std::move(problem));
+  if (batch > 1000000) found.push_back(fmt::format("batch is {}; allowed is up to 1000000", batch));
+  return found;
+}
+
+struct StackStudyPlan::Data {
+  StackStudyOptions options;
+  std::ptrdiff_t rows, columns;
+  Preparation preparation;
+  std::optional<CentreFinder> centre_finder;
+  DiskBasis basis;
+  std::optional<DiskTransform<double>> fine;
+  std::optional<DiskTransform<float>> coarse;
+  NoiseEstimator noise_estimator;
+  std::optional<SymmetryTest> symmetry_test;
+
+  DiskTransformOptions transform_options() const { return {options.geometry, rows, columns, options.tolerance}; }
+
+  Data(const StackStudyOptions& o, std::ptrdiff_t row_count, std::ptrdiff_t column_count, Executor& executor)
+      : options(o),
+        rows(row_count),
+        columns(column_count),
+        preparation(o.preparation, row_count, column_count, o.geometry.radius),
+        basis(o.geometry),
+        noise_estimator(basis, row_count, column_count) {
+    if (o.find_centres) centre_finder.emplace(CentreOptions{o.geometry, row_count, column_count, o.search});
+    if (o.double_precision)
+      fine.emplace(transform_options());
+    else
+      coarse.emplace(transform_options());
+    if (o.test_symmetry) symmetry_test.emplace(basis, o.symmetry, executor);
+  }
+
+  /// What one worker needs.
+  struct Worker {
+    std::optional<DiskTransform<double>::Workspace> fine;
+    std::optional<DiskTransform<float>::Workspace> coarse;
+    std::vector<float> image;
+    std::vector<std::complex<float>> coefficients;
+  };
+
+  Worker make_worker() const {
+    Worker worker;
+    if (fine) worker.fine = fine->make_workspace();
+    if (coarse) {
+      worker.coarse = coarse->make_workspace();
+      worker.image.resize(rows * columns);
+      worker.coefficients.resize(basis.size());
+    }
+    return worker;
+  }
+
+  ImageStatus expand(ImageView<const double> image, Centre centre, std::complex<double>* out, Worker& worker) const {
+    ImageStatus status;
+    const auto terms = static_cast<std::ptrdiff_t>(basis.size());
+    if (fine) {
+      fine->analyse({image.data, 1, rows, columns, 0, image.row_stride}, {&centre, 1}, {out, 1, terms}, {&status, 1},
+                    *worker.fine);
+      return status;
+    }
+    for (std::ptrdiff_t y = 0; y < rows; ++y)
+      std::transform(image.row(y), image.row(y) + columns, worker.image.begin() + y * columns,
+                     [](double value) { return static_cast<float>(value); });
+    coarse->analyse({worker.image.data(), 1, rows, columns}, {&centre, 1}, {worker.coefficients.data(), 1, terms},
+                    {&status, 1}, *worker.coarse);
+    std::copy(worker.coefficients.begin(), worker.coefficients.end(), out);
+    return status;
+  }
+
+  /// Everything about one image; `image` holds its pixels and keeps the prepared ones.
+  void study(ImageStudy& result, std::optional<Centre> given, ImageView<double> image,
+             std::complex<double>* coefficients, Worker& worker) const {
+    const Centre first_guess = given.value_or(frame_middle(rows, columns));
+    result.centre.centre = first_guess;
+    result.prepared = preparation.apply(image, first_guess);
+    result.status = result.prepared.status;
+    if (!result.status.ok()) return;
+    if (centre_finder) result.centre = centre_finder->find(image);
+    result.status = expand(image, result.centre.centre, coefficients, worker);
+    if (!result.status.ok()) return;
+
+    const std::span<const std::complex<double>> a(coefficients, basis.size());
+    const std::vector<double> energies = raw_energies(basis, a);
+    result.noise = noise_estimator.estimate(image, result.centre.centre, energies);
+    result.noise_sd = result.noise.sd(basis.root_limit());
+    result.signal_to_noise = signal_to_noise(rotational_spectrum(basis, a, result.noise));
+    if (centre_finder) centre_finder->add_covariance(result.centre, image, result.noise);
+    if (symmetry_test) result.evidence = symmetry_test->evaluate(symmetry_test->whitened(energies, result.noise));
+  }
+};
+
+StackStudyPlan::StackStudyPlan(const StackStudyOptions& options, std::ptrdiff_t rows, std::ptrdiff_t columns,
+                               Executor& executor) {
+  refuse_if_any(options.problems());
+  data_ = std::make_unique<const Data>(options, rows, columns, executor);
+}
+
+StackStudyPlan::~StackStudyPlan() = default;
+
+const StackStudyOptions& StackStudyPlan::options() const noexcept { return data_->options; }
+const DiskBasis& StackStudyPlan::basis() const noexcept { return data_->basis; }
+double StackStudyPlan::tolerance() const noexcept {
+  return data_->fine ? data_->fine->options().tolerance : data_->coarse->options().tolerance;
+}
+bool StackStudyPlan::noise_from_outside() const noexcept { return data_->noise_estimator.uses_outside(); }
+const SymmetryTest* StackStudyPlan::symmetry_test() const noexcept {
+  return data_->symmetry_test ? &*data_->symmetry_test : nullptr;
+}
+
+void StackStudyPlan::run(const ImageSource& source, std::span<const Centre> centres,
+                         std::span<const ImageStatus> given_status, Executor& executor, ProgressSink& progress,
+                         const std::function<void(const StudyBatch&)>& take_batch) const {
+  const Data& d = *data_;
+  const std::size_t total = source.images();
+  require(source.rows() == d.rows && source.columns() == d.columns, "image size",
+          fmt::format("{} x {}", source.columns(), source.rows()),
+          fmt::format("{} x {} px (columns x rows), as planned", d.columns, d.rows));
+  require(centres.empty() || centres.size() == total, "number of centres", centres.size(),
+          fmt::format("0 or {}, one per image", total));
+  require(centres.empty() || !d.centre_finder, "number of centres", centres.size(), "0 where centres are to be found");
+  require(given_status.empty() || given_status.size() == total, "number of statuses", given_status.size(),
+          fmt::format("0 or {}, one per image", total));
+
+  std::vector<Data::Worker> workers;
+  for (int i = 0; i < executor.workers(); ++i) workers.push_back(d.make_worker());
+  const std::size_t batch = std::min(
+      total, d.options.batch > 0 ? d.options.batch : images_per_worker * static_cast<std::size_t>(executor.workers()));
+  const std::size_t pixels = d.rows * d.columns, terms = d.basis.size();
+  std::vector<double> images(batch * pixels);
+  std::vector<std::complex<double>> coefficients(batch * terms);
+
+  for (std::size_t first = 0; first < total; first += batch) {
+    if (progress.stop_requested())
+      throw Error(ErrorCode::interrupted, fmt::format("stopped after {} of {} images", first, total));
+    progress.advance("images", first, total);
+    const std::size_t count = std::min(batch, total - first);
+    StudyBatch result;
+    result.first = first;
+    result.images.resize(count);
+    std::fill(coefficients.begin(), coefficients.end(), std::complex<double>());
+    executor.run(count, [&](std::size_t i, int worker) {
+      ImageStudy& study = result.images[i];
+      study.image = first + i;
+      study.source = source.name(study.image);
+      std::optional<Centre> given;
+      if (!centres.empty()) given = centres[study.image];
+      study.centre.centre = given.value_or(frame_middle(d.rows, d.columns));
+      if (!given_status.empty()) study.status = given_status[study.image];
+      if (!study.status.ok()) return;
+      const ImageView<double> image(images.data() + i * pixels, d.rows, d.columns);
+      study.status = source.read(study.image, image);
+      if (study.status.ok()) d.study(study, given, image, coefficients.data() + i * terms, workers[worker]);
+    });
+    const auto rows = static_cast<std::ptrdiff_t>(count);
+    result.prepared = StackView<double>(images.data(), rows, d.rows, d.columns);
+    result.coefficients =
+        MatrixView<std::complex<double>>(coefficients.data(), rows, static_cast<std::ptrdiff_t>(terms));
+    take_batch(result);
+  }
+  progress.advance("images", total, total);
+}
+
+}  // namespace tambour
