@@ -1,0 +1,18 @@
+# cmake -D OUT=assets.cpp -D NAME=file ... -P embed.cmake: writes the files that assets.hpp declares as C++ string constants.
+set(text "// Made by embed.cmake from the files of lib/src/report and Chart.js.\n#include \"report/assets.hpp\"\n\n")
+string(APPEND text "namespace tambour::report {\n\nconst std::string_view chart_version = \"${CHART_VERSION}\";\n")
+foreach(name chart_script chart_licence limits_text page_style page_script)
+  file(READ ${${name}} content)
+  string(FIND "${content}" ")~asset~\"" clash)
+  if(NOT clash EQUAL -1)
+    message(FATAL_ERROR "${${name}} contains the delimiter of the raw string it is put into")
+  endif()
+  # An asset that could close its own element would break the page.
+  string(TOLOWER "${content}" lower)
+  if(lower MATCHES "</script|</style|<!--")
+    message(FATAL_ERROR "${${name}} contains </script, </style or <!-- and cannot be put into a page as it is")
+  endif()
+  string(APPEND text "const std::string_view ${name} = R\"~asset~(${content})~asset~\";\n")
+endforeach()
+string(APPEND text "\n}  // namespace tambour::report\n")
+file(WRITE ${OUT} "${text}")
