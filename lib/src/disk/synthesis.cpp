@@ -27,6 +27,9 @@ std::vector<double> deconvolution_series(const GriddingKernel& kernel, double fr
   return series;
 }
 
+/// Argument below which |J_order| stays under 1e-17 (DLMF 10.19.8, the transition region).
+double onset(int order) { return order - 12.5 * std::cbrt(order); }
+
 }  // namespace
 
 template <class T>
@@ -62,8 +65,10 @@ void Synthesis<T>::make_matrices(const DiskBasis& basis) {
       const auto add = [&](int order, double factor) {
         // J_{-q} = (-1)^q J_q
         if (order < 0 && order % 2 != 0) factor = -factor;
-        table.values(std::abs(order), x.data(), x.size(), value.data());
-        for (int j = 0; j < rings_; ++j) g[j] += factor * value[j];
+        order = std::abs(order);
+        const std::size_t begin = std::lower_bound(x.begin(), x.end(), onset(order)) - x.begin();
+        table.values(order, x.data() + begin, x.size() - begin, value.data() + begin);
+        for (std::size_t j = begin; j < x.size(); ++j) g[j] += factor * value[j];
       };
       add(n, series[0]);
       for (int m = 1; m < static_cast<int>(series.size()); ++m) {

@@ -2,6 +2,7 @@
 
 #include <algorithm>
 #include <cmath>
+#include <iterator>
 #include <limits>
 
 namespace tambour::study {
@@ -10,7 +11,6 @@ namespace {
 constexpr int amplitudes = 10;
 constexpr double smallest_amplitude = 0.125, largest_amplitude = 256;
 constexpr double widths[] = {0.2, 0.3, 0.45, 0.7, 1.2};  // L, in units of lambda_max
-constexpr double negligible = 1e-9;                      // t below this leaves ln BF unchanged
 
 }  // namespace
 
@@ -25,58 +25,57 @@ double log_mean_exp(std::span<const double> values) {
 Evidence::Evidence(const Shells& shells, double root_limit, int first_fold, int last_fold, int images)
     : folds_(last_fold - first_fold + 1),
       orders_(static_cast<int>(shells.degrees_of_freedom.front().size())),
-      shells_(shells.size()) {
-  for (std::size_t j = 0; j < shells_; ++j) total_degrees_.push_back(shells.total(j) * images);
-  for (int fold = first_fold; fold <= last_fold; ++fold) {
-    auto& multiples = multiples_.emplace_back();
-    for (int n = fold; n < orders_; n += fold)
-      if (n >= 2) multiples.push_back(n);
-    for (std::size_t j = 0; j < shells_; ++j) {
-      double degrees = 0;
-      for (const std::size_t n : multiples) degrees += shells.degrees_of_freedom[j][n];
-      fold_degrees_.push_back(degrees * images);
-    }
-  }
+      shells_(shells.size()),
+      total_degrees_(shells_),
+      shrink_(shells_, amplitudes * std::size(widths)) {
   const double lowest = smallest_amplitude / std::sqrt(images);
+  Eigen::MatrixXd growth(shrink_.cols(), shells_);  // ln(1 + t)
+  Eigen::Index setting = 0;
   for (int i = 0; i < amplitudes; ++i) {
     const double amplitude = lowest * std::pow(largest_amplitude / lowest, static_cast<double>(i) / (amplitudes - 1));
     for (const double width : widths) {
-      ++settings_;
       for (std::size_t j = 0; j < shells_; ++j) {
         const double x = shells.mean_root[j] / (width * root_limit);
         const double t = amplitude * std::exp(-x * x / 2);
-        profiles_.push_back(t < negligible ? Profile{0, 0} : Profile{t / (1 + t), std::log1p(t)});
+        shrink_(j, setting) = t / (1 + t);
+        growth(setting, j) = std::log1p(t);
       }
+      ++setting;
     }
   }
+  Eigen::MatrixXd fold_degrees(shells_, folds_);  // d_jN
+  for (std::size_t j = 0; j < shells_; ++j) total_degrees_[j] = shells.total(j) * images;
+  for (int fold = 0; fold < folds_; ++fold) {
+    auto& multiples = multiples_.emplace_back();
+    for (int n = first_fold + fold; n < orders_; n += first_fold + fold) multiples.push_back(n);
+    for (std::size_t j = 0; j < shells_; ++j) {
+      double degrees = 0;
+      for (const std::size_t n : multiples) degrees += shells.degrees_of_freedom[j][n];
+      fold_degrees(j, fold) = degrees * images;
+    }
+  }
+  penalty_ = growth * fold_degrees / 2;
 }
 
 void Evidence::ln_bayes_factors(std::span<const double> energies, std::span<double> out) const {
-  std::vector<double> total(shells_, 0.0);
-  for (std::size_t j = 0; j < shells_; ++j)
+  Eigen::ArrayXd total(shells_), share(shells_);
+  for (std::size_t j = 0; j < shells_; ++j) {
+    total[j] = 0;
     for (int n = 0; n < orders_; ++n) total[j] += energies[j * orders_ + n];
-  std::vector<double> share(shells_), ln_bf(settings_);
+  }
   for (int fold = 0; fold < folds_; ++fold) {
     if (multiples_[fold].empty()) {
       out[fold] = -std::numeric_limits<double>::infinity();
       continue;
     }
-    const double* degrees = fold_degrees_.data() + fold * shells_;
     for (std::size_t j = 0; j < shells_; ++j) {
       double inside = 0;
       for (const std::size_t n : multiples_[fold]) inside += energies[j * orders_ + n];
       share[j] = total[j] > 0 ? inside / total[j] : 0;
     }
-    const Profile* profile = profiles_.data();
-    for (double& value : ln_bf) {
-      double sum = 0;
-      for (std::size_t j = 0; j < shells_; ++j, ++profile) {
-        if (profile->shrink == 0 || degrees[j] == 0) continue;
-        sum -= (degrees[j] * profile->log + total_degrees_[j] * std::log1p(-share[j] * profile->shrink)) / 2;
-      }
-      value = sum;
-    }
-    out[fold] = log_mean_exp(ln_bf);
+    const Eigen::MatrixXd logs = (1 - shrink_.colwise() * share).log();
+    const Eigen::VectorXd ln_bf = -penalty_.col(fold) - logs.transpose() * total_degrees_ / 2;
+    out[fold] = log_mean_exp({ln_bf.data(), static_cast<std::size_t>(ln_bf.size())});
   }
 }
 

@@ -1,6 +1,7 @@
 // The Bayes factors of the N-fold test and the statistic made of them.
 #pragma once
 
+#include <Eigen/Dense>
 #include <span>
 #include <vector>
 
@@ -25,14 +26,9 @@ class Evidence {
   int folds_, orders_;
   std::size_t shells_;
   std::vector<std::vector<std::size_t>> multiples_;  // per fold: orders >= 2 that are its multiples
-  std::vector<double> total_degrees_;                // per shell: D_j
-  std::vector<double> fold_degrees_;                 // per fold and shell: d_jN
-  struct Profile {
-    double shrink;  // t / (1 + t)
-    double log;     // ln(1 + t)
-  };
-  std::vector<Profile> profiles_;  // per (A, L) and shell
-  std::size_t settings_ = 0;       // pairs of (A, L)
+  Eigen::VectorXd total_degrees_;                    // per shell: D_j
+  Eigen::ArrayXXd shrink_;                           // shells x settings of (A, L): t / (1 + t)
+  Eigen::MatrixXd penalty_;                          // settings x folds: sum_j d_jN / 2 ln(1 + t_j)
 };
 
 /// ln of the mean of exp(values).

@@ -133,6 +133,26 @@ double StackStudyPlan::tolerance() const noexcept {
   return data_->fine ? data_->fine->options().tolerance : data_->coarse->options().tolerance;
 }
 bool StackStudyPlan::noise_from_outside() const noexcept { return data_->noise_estimator.uses_outside(); }
+void StackStudyPlan::rebuild(std::span<const std::complex<double>> coefficients, Centre centre,
+                             ImageView<double> out) const {
+  const Data& d = *data_;
+  require(out.rows == d.rows && out.columns == d.columns, "shape of the image",
+          fmt::format("{} x {}", out.rows, out.columns), fmt::format("{} x {}, as planned", d.rows, d.columns));
+  const auto terms = static_cast<std::ptrdiff_t>(coefficients.size());
+  if (d.fine) {
+    auto workspace = d.fine->make_workspace();
+    d.fine->synthesise({coefficients.data(), 1, terms}, {&centre, 1}, {out.data, 1, d.rows, d.columns, 0, out.row_stride},
+                       workspace);
+    return;
+  }
+  auto workspace = d.coarse->make_workspace();
+  const std::vector<std::complex<float>> single(coefficients.begin(), coefficients.end());
+  std::vector<float> image(d.rows * d.columns);
+  d.coarse->synthesise({single.data(), 1, terms}, {&centre, 1}, {image.data(), 1, d.rows, d.columns}, workspace);
+  for (std::ptrdiff_t y = 0; y < d.rows; ++y)
+    std::copy_n(image.begin() + y * d.columns, d.columns, out.row(y));
+}
+
 const SymmetryTest* StackStudyPlan::symmetry_test() const noexcept {
   return data_->symmetry_test ? &*data_->symmetry_test : nullptr;
 }
