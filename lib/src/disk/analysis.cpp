@@ -11,11 +11,12 @@ namespace {
 using fourier::aligned_count;
 using std::numbers::pi;
 
-/// Wide kernels on a coarse fine grid pay in single precision and for large images; small double ones want the finer
-/// grid.
+/// A wide kernel on a coarse fine grid pays for large images. In single precision sigma = 1.5 is too coarse: the
+/// deconvolution amplifies rounding to 1.5e-6 at 256 px, against 0.8e-6 at 1.75.
 template <class T>
 double oversampling_for(int rows, int columns) {
-  return std::is_same_v<T, float> || std::max(rows, columns) > 128 ? 1.5 : 2;
+  if (std::is_same_v<T, float>) return 1.75;
+  return std::max(rows, columns) > 128 ? 1.5 : 2;
 }
 
 }  // namespace

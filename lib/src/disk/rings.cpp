@@ -15,7 +15,7 @@ constexpr double sqrt2 = std::numbers::sqrt2;
 
 int ring_count(double radius, double bandlimit, double tolerance) {
   const double half = pi * radius * (sqrt2 + bandlimit) / 4;
-  return static_cast<int>(std::ceil(half + 0.45 * std::pow(-std::log(tolerance), 2.0 / 3) * std::cbrt(half) + 2));
+  return static_cast<int>(std::ceil(half + 0.45 * std::pow(-std::log(tolerance), 2.0 / 3) * std::cbrt(half) + 6));
 }
 
 /// tail[n] = sum over m >= n of |J_m(x)|.

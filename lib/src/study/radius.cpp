@@ -4,6 +4,7 @@
 
 #include <algorithm>
 #include <cmath>
+#include <numbers>
 
 #include "base/check.hpp"
 
@@ -11,10 +12,11 @@ namespace tambour {
 namespace {
 
 constexpr std::size_t most_images = 256;
-constexpr double faded = 0.05;   // of the largest excess
-constexpr double margin = 3;     // px for the objects' own offsets
-constexpr double smallest = 4;   // px
-constexpr double rim_width = 3;  // px of radius that tell the rim's level
+constexpr double faded = 0.05;       // of the largest excess
+constexpr double margin = 3;         // px for the objects' own offsets
+constexpr double smallest = 4;       // px
+constexpr std::size_t rim_bins = 3;  // px of radius that tell the rim's level
+constexpr double least_errors = 4;   // standard errors that make an excess real
 
 /// Per pixel of radius: count, and sums of the values and of their squares.
 struct Profile {
@@ -39,7 +41,7 @@ void add_image(ImageView<const double> image, Profile& profile) {
 std::vector<double> deviation(const Profile& profile) {
   const std::size_t bins = profile.count.size();
   double count = 0, sum = 0;
-  for (std::size_t bin = bins - static_cast<std::size_t>(rim_width); bin < bins; ++bin) {
+  for (std::size_t bin = bins - rim_bins; bin < bins; ++bin) {
     count += profile.count[bin];
     sum += profile.sum[bin];
   }
@@ -82,22 +84,26 @@ RadiusEstimate estimate_radius(const ImageSource& source, double search, Executo
   }
   if (estimate.images == 0)
     throw Error(ErrorCode::bad_input, fmt::format("{}: no image of the stack can be read", source.name(0)));
+  for (double& value : mean) value /= static_cast<double>(estimate.images);
 
-  // Three bins are averaged: the innermost hold few pixels.
+  double floor = 0;
+  for (std::size_t bin = bins - rim_bins; bin < bins; ++bin) floor += mean[bin] / static_cast<double>(rim_bins);
+  std::vector<bool> significant;
   for (std::size_t bin = 0; bin < bins; ++bin) {
-    const std::size_t from = bin == 0 ? 0 : bin - 1, to = std::min(bin + 1, bins - 1);
-    double sum = 0;
-    for (std::size_t b = from; b <= to; ++b) sum += mean[b];
-    estimate.excess.push_back(sum / static_cast<double>(to - from + 1));
+    estimate.excess.push_back(mean[bin] - floor);
+    // A ring of width 1 holds 2 pi r pixels; the mean square of n normal deviates has the relative error sqrt(2 / n).
+    const double pixels =
+        2 * std::numbers::pi * (static_cast<double>(bin) + 0.5) * static_cast<double>(estimate.images);
+    significant.push_back(mean[bin] - floor > least_errors * floor * std::sqrt(2 / pixels));
   }
-  const double floor = *std::min_element(estimate.excess.begin(), estimate.excess.end());
-  const double largest = *std::max_element(estimate.excess.begin(), estimate.excess.end()) - floor;
+  const double largest = *std::max_element(estimate.excess.begin(), estimate.excess.end());
   std::size_t end = bins;
-  for (double& value : estimate.excess) value = largest > 0 ? (value - floor) / largest : 0;
-  while (end > 0 && estimate.excess[end - 1] < faded) --end;
+  while (end > 0 && !(significant[end - 1] && estimate.excess[end - 1] > faded * largest)) --end;
   const double wanted = std::ceil(static_cast<double>(end) + margin);
-  estimate.object_ends = largest > 0 && end > 0 && wanted <= room;
+  estimate.object_ends = end > 0 && wanted <= room;
   estimate.radius = estimate.object_ends ? std::max(wanted, smallest) : room;
+  if (largest > 0)
+    for (double& value : estimate.excess) value /= largest;
   return estimate;
 }
 
