@@ -1,6 +1,7 @@
 #include <algorithm>
 #include <cmath>
 #include <cstddef>
+#include <utility>
 #include <vector>
 
 #include "base/check.hpp"
@@ -16,8 +17,8 @@ using bessel::kLanes;
 using bessel::kPairs;
 using bessel::Pair;
 
-constexpr int kTerms = bessel::kNearTerms + 2;  // the chord may choose the farther node by a little
-constexpr int kCoarseTerms = 8;                // good to 1e-6
+constexpr int kTerms = bessel::kNearTerms + 2;  // the node with the smaller value need not be the nearest
+constexpr int kCoarseTerms = 8;                 // good to 1e-6
 constexpr int kMaxOrder = 5000;
 constexpr double kMaxLimit = 1e5;
 // Roots lie above x = n, where a sweep begun this far down has forgotten its start.
@@ -53,9 +54,9 @@ template <Edge edge>
 void RootLanes::solve(double order) {
   Pair node[kPairs], t[kPairs], one[kPairs], c[kTerms][kPairs];
   for (int l = 0; l < kPairs; ++l) {
-    node[l] = Pair{x0[2 * l], x0[2 * l + 1]};
-    c[0][l] = Pair{y[2 * l], y[2 * l + 1]};
-    c[1][l] = Pair{dy[2 * l], dy[2 * l + 1]};
+    node[l] = bessel::load_pair(x0, l);
+    c[0][l] = bessel::load_pair(y, l);
+    c[1][l] = bessel::load_pair(dy, l);
     one[l] = Pair{1, 1};
     t[l] = halley_step<edge>(order, node[l], c[0][l], c[1][l]);
   }
@@ -99,14 +100,18 @@ void append_roots(Edge edge, int order, int first, int count, const double* y, c
       lanes.y[l] = y[node];
       lanes.dy[l] = dy[node];
     }
-    edge == Edge::dirichlet ? lanes.solve<Edge::dirichlet>(order) : lanes.solve<Edge::neumann>(order);
+    if (edge == Edge::dirichlet) {
+      lanes.solve<Edge::dirichlet>(order);
+    } else {
+      lanes.solve<Edge::neumann>(order);
+    }
     roots->insert(roots->end(), lanes.root, lanes.root + used);
   }
 }
 
 using RootLists = std::vector<std::vector<double>>;
 
-void append_roots(Edge edge, int first, int count, const bessel::Sweep& sweep, std::vector<double>* roots) {
+void append_roots(Edge edge, int first, int count, const bessel::Sweep<double>& sweep, std::vector<double>* roots) {
   double dy[kChunk + 1];
   for (int i = 0; i < count; ++i) dy[i] = 0.5 * (sweep.below()[i] - sweep.above()[i]);
   append_roots(edge, sweep.order(), first, count, sweep.here(), dy, roots);
@@ -114,7 +119,7 @@ void append_roots(Edge edge, int first, int count, const bessel::Sweep& sweep, s
 
 // All orders lie below x here: upwards, which takes one step an order wherever x is.
 void search_upwards(int first_order, Edge edge, int first, int count, RootLists* lists) {
-  bessel::UpwardSweep sweep(first_order, first, count);
+  bessel::UpwardSweep<double> sweep(first_order, first, count);
   append_roots(edge, first_order, first, count, sweep.here(), sweep.first_slope(), &lists->front());
   for (std::size_t i = 1; i < lists->size(); ++i) {
     sweep.next();
@@ -124,7 +129,7 @@ void search_upwards(int first_order, Edge edge, int first, int count, RootLists*
 
 void search_downwards(int first_order, Edge edge, int first, int count, RootLists* lists) {
   const int last_order = first_order + static_cast<int>(lists->size()) - 1;
-  bessel::DownwardSweep sweep(first, bessel::start_orders(first, count, kDepth));
+  bessel::DownwardSweep<double> sweep(first, bessel::start_orders(first, count, kDepth));
   do {
     if (sweep.order() > last_order) continue;
     append_roots(edge, first, count, sweep, &(*lists)[static_cast<std::size_t>(sweep.order() - first_order)]);

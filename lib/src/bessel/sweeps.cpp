@@ -57,50 +57,55 @@ std::vector<int> start_orders(int first, int count, double depth) {
   return starts;
 }
 
-Sweep::Sweep(int first, int count) {
+template <class Real>
+Sweep<Real>::Sweep(int first, int count) {
   const auto size = static_cast<std::size_t>(count);
   two_over_x_.resize(size);
   two_over_x_rest_.resize(size);
-  above_.assign(size, 0.0);
-  here_.assign(size, 0.0);
-  below_.assign(size, 0.0);
+  above_.assign(size, 0);
+  here_.assign(size, 0);
+  below_.assign(size, 0);
   for (std::size_t i = 0; i < size; ++i) {
     // The rounding of 2/x would act like a shift of x, the same at every order. With a short first piece n * (2/x) is
     // exact but for one rounding, as it would be with a division.
-    const double x = first + static_cast<double>(i);
+    const Real x = static_cast<Real>(first) + static_cast<Real>(i);
     two_over_x_[i] = static_cast<float>(2 / x);
     two_over_x_rest_[i] = (2 - two_over_x_[i] * x) / x;
   }
 }
 
-void Sweep::recur(int begin, const std::vector<double>& other, std::vector<double>* out) {
-  const double n = order_;
-  const double* main = two_over_x_.data();
-  const double* rest = two_over_x_rest_.data();
-  const double* here = here_.data();
-  const double* minus = other.data();
-  double* result = out->data();
+template <class Real>
+void Sweep<Real>::recur(int begin, const std::vector<Real>& other, std::vector<Real>* out) {
+  const auto n = static_cast<Real>(order_);
+  const Real* main = two_over_x_.data();
+  const Real* rest = two_over_x_rest_.data();
+  const Real* here = here_.data();
+  const Real* minus = other.data();
+  Real* result = out->data();
   const auto count = static_cast<int>(here_.size());
   for (int i = begin; i < count; ++i) result[i] = (n * main[i] + n * rest[i]) * here[i] - minus[i];
 }
 
-DownwardSweep::DownwardSweep(int first, std::vector<int> starts)
-    : Sweep(first, static_cast<int>(starts.size())),
+template <class Real>
+DownwardSweep<Real>::DownwardSweep(int first, std::vector<int> starts)
+    : Sweep<Real>(first, static_cast<int>(starts.size())),
       starts_(std::move(starts)),
       active_(static_cast<int>(starts_.size())) {
   order_ = starts_.back();
   fill_below();
 }
 
-void DownwardSweep::fill_below() {
+template <class Real>
+void DownwardSweep<Real>::fill_below() {
   while (active_ > 0 && starts_[static_cast<std::size_t>(active_ - 1)] >= order_) {
     --active_;
-    here_[static_cast<std::size_t>(active_)] = kSeed;
+    here_[static_cast<std::size_t>(active_)] = static_cast<Real>(kSeed);
   }
-  recur(active_, above_, &below_);
+  this->recur(active_, above_, &below_);
 }
 
-bool DownwardSweep::next() {
+template <class Real>
+bool DownwardSweep<Real>::next() {
   if (order_ == 0) return false;
   --order_;
   above_.swap(here_);
@@ -109,20 +114,30 @@ bool DownwardSweep::next() {
   return true;
 }
 
-UpwardSweep::UpwardSweep(int first_order, int first, int count) : Sweep(first, count), slope_(here_.size()) {
+template <class Real>
+UpwardSweep<Real>::UpwardSweep(int first_order, int first, int count)
+    : Sweep<Real>(first, count), slope_(static_cast<std::size_t>(count)) {
   order_ = first_order;
-  march(first_order, first, &here_, &slope_);
-  for (std::size_t i = 0; i < here_.size(); ++i) {
-    above_[i] = first_order / (first + static_cast<double>(i)) * here_[i] - slope_[i];
+  std::vector<double> value(slope_.size());
+  march(first_order, first, &value, &slope_);
+  for (std::size_t i = 0; i < value.size(); ++i) {
+    here_[i] = value[i];
+    above_[i] = order_ / (first + static_cast<Real>(i)) * here_[i] - slope_[i];
   }
-  recur(0, above_, &below_);
+  this->recur(0, above_, &below_);
 }
 
-void UpwardSweep::next() {
+template <class Real>
+void UpwardSweep<Real>::next() {
   ++order_;
   below_.swap(here_);
   here_.swap(above_);
-  recur(0, below_, &above_);
+  this->recur(0, below_, &above_);
 }
+
+template class DownwardSweep<double>;
+template class DownwardSweep<long double>;
+template class UpwardSweep<double>;
+template class UpwardSweep<long double>;
 
 }  // namespace tambour::bessel

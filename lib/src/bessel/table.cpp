@@ -1,8 +1,8 @@
 #include <algorithm>
 #include <boost/math/special_functions/bessel.hpp>
 #include <boost/math/special_functions/bessel_prime.hpp>
-#include <cmath>
 #include <cstddef>
+#include <utility>
 #include <vector>
 
 #include "base/check.hpp"
@@ -21,8 +21,9 @@ using bessel::Pair;
 
 constexpr int kMaxOrder = 5100;
 constexpr double kMaxX = 1e6;
-// Nodes end here: beyond it double recurrences lose digits and dense nodes cost memory, so Boost computes each value.
+// Nodes end here: more would cost memory for rare use, so beyond it Boost computes each value.
 constexpr int kLastNode = 10000;
+using Wide = long double;  // of the sweeps that fill the nodes
 // Values are kept times 2^900, so that a node where J_n underflows still serves points where it does not.
 constexpr double kScale = 0x1p900;
 constexpr double kUnscale = 0x1p-900;
@@ -33,6 +34,9 @@ constexpr double kDepth = 820;
 // accuracy, and its series is longer.
 bool is_near(int order, double x) { return x >= 0.5 && x >= 0.7 * order; }
 bool is_small(int order, double x) { return !is_near(order, x) && bessel::power_series_holds(order, x); }
+
+// Index of the node nearest to x >= 0.5; node i lies at x = i + 1.
+int nearest_node(double x) { return static_cast<int>(2 * x + 1) / 2 - 1; }
 
 }  // namespace
 
@@ -72,7 +76,7 @@ struct BesselTable::Data {
 
 void BesselTable::Data::allocate() {
   first_row = std::max(first_order - 1, 0);
-  nodes = static_cast<int>(std::min<double>(kLastNode, std::floor(x_max + 0.5)));
+  nodes = x_max < 0.5 ? 0 : nearest_node(std::min<double>(x_max, kLastNode)) + 1;
   const std::vector<int> starts = nodes > 0 ? bessel::start_orders(1, nodes, kDepth) : std::vector<int>();
   std::size_t total = 0;
   int node = 0;
@@ -92,38 +96,42 @@ double* BesselTable::Data::row_from(int order, int node) {
 
 void BesselTable::Data::fill_downwards(int first, int count) {
   const int base = first - 1;
-  std::vector<double> sum(static_cast<std::size_t>(count), 0.0);
-  bessel::DownwardSweep sweep(first, bessel::start_orders(first, count, kDepth));
+  std::vector<Wide> sum(static_cast<std::size_t>(count), 0);
+  bessel::DownwardSweep<Wide> sweep(first, bessel::start_orders(first, count, kDepth));
   const auto stored_from = [&](int order) {
     return std::max(0, start[static_cast<std::size_t>(order - first_row)] - base);
   };
   do {
     const int order = sweep.order();
-    const double* here = sweep.here();
+    const Wide* here = sweep.here();
     // Normalised by J_0 + 2 J_2 + 2 J_4 + ... = 1 (DLMF 10.12.4).
     if (order % 2 == 0) {
-      const double weight = order == 0 ? 1 : 2;
+      const Wide weight = order == 0 ? 1 : 2;
       for (int i = sweep.active(); i < count; ++i) sum[static_cast<std::size_t>(i)] += weight * here[i];
     }
     if (order < first_row || order > last_order + 1) continue;
     const int from = stored_from(order);
-    if (from < count) std::copy(here + from, here + count, row_from(order, base + from));
+    if (from >= count) continue;
+    double* out = row_from(order, base + from);
+    for (int i = from; i < count; ++i) *out++ = static_cast<double>(here[i]);
   } while (sweep.next());
-  for (auto& one : sum) one = kScale / one;
+  std::vector<double> factor;
+  factor.reserve(sum.size());
+  for (const Wide one : sum) factor.push_back(static_cast<double>(kScale / one));
   for (int order = first_row; order <= last_order + 1; ++order) {
     const int from = stored_from(order);
     if (from >= count) break;
     double* out = row_from(order, base + from);
-    for (int i = from; i < count; ++i) *out++ *= sum[static_cast<std::size_t>(i)];
+    for (int i = from; i < count; ++i) *out++ *= factor[static_cast<std::size_t>(i)];
   }
 }
 
 // For chunks to the right of every turning point.
 void BesselTable::Data::fill_upwards(int first, int count) {
-  bessel::UpwardSweep sweep(first_row, first, count);
+  bessel::UpwardSweep<Wide> sweep(first_row, first, count);
   for (;;) {
     double* out = row_from(sweep.order(), first - 1);
-    for (int i = 0; i < count; ++i) out[i] = kScale * sweep.here()[i];
+    for (int i = 0; i < count; ++i) out[i] = static_cast<double>(kScale * sweep.here()[i]);
     if (sweep.order() == last_order + 1) return;
     sweep.next();
   }
@@ -133,7 +141,11 @@ void BesselTable::Data::build() {
   allocate();
   for (int first = 1; first <= nodes; first += kChunk) {
     const int count = std::min(kChunk, nodes - first + 1);
-    first > last_order + 1 ? fill_upwards(first, count) : fill_downwards(first, count);
+    if (first > last_order + 1) {
+      fill_upwards(first, count);
+    } else {
+      fill_downwards(first, count);
+    }
   }
 }
 
@@ -155,7 +167,7 @@ struct BesselTable::Data::Expansion {
 BesselTable::Data::Expansion BesselTable::Data::expand(int order, double x) const {
   Expansion e;
   const bool near = is_near(order, x);
-  const int node = static_cast<int>(near ? x + 0.5 : x) - 1;
+  const int node = near ? nearest_node(x) : static_cast<int>(x) - 1;
   const double x0[1] = {node + 1.0};
   e.t[0] = x - x0[0];
   e.slope = slope(order, node);
@@ -163,8 +175,8 @@ BesselTable::Data::Expansion BesselTable::Data::expand(int order, double x) cons
   e.d[1][0] = e.slope * e.t[0];
   if (e.d[0][0] == 0 && e.slope == 0) return e;
   // To the left of the turning point the terms grow like (n t / x0)^k / k! before they fall.
-  e.count = near ? bessel::kNearTerms
-                 : std::min(bessel::kMaxTerms, 18 + static_cast<int>(4.2 * order * e.t[0] / x0[0]));
+  e.count =
+      near ? bessel::kNearTerms : std::min(bessel::kMaxTerms, 18 + static_cast<int>(4.2 * order * e.t[0] / x0[0]));
   bessel::taylor_terms<double, 1>(order, e.count, x0, e.t, e.d);
   return e;
 }
@@ -228,10 +240,10 @@ void BesselTable::values(int order, const double* x, std::size_t count, double* 
   const auto flush = [&] {
     Pair x0s[kPairs], ts[kPairs], sum[kPairs], d[bessel::kNearTerms][kPairs];
     for (int l = 0; l < kPairs; ++l) {
-      x0s[l] = Pair{x0[2 * l], x0[2 * l + 1]};
-      ts[l] = Pair{t[2 * l], t[2 * l + 1]};
-      d[0][l] = Pair{value[2 * l], value[2 * l + 1]};
-      d[1][l] = Pair{slope[2 * l], slope[2 * l + 1]} * ts[l];
+      x0s[l] = bessel::load_pair(x0, l);
+      ts[l] = bessel::load_pair(t, l);
+      d[0][l] = bessel::load_pair(value, l);
+      d[1][l] = bessel::load_pair(slope, l) * ts[l];
       sum[l] = Pair{};
     }
     bessel::taylor_terms<Pair, kPairs>(order, bessel::kNearTerms, x0s, ts, d);
@@ -247,7 +259,7 @@ void BesselTable::values(int order, const double* x, std::size_t count, double* 
       out[i] = data.value(order, x[i]);
       continue;
     }
-    const int node = static_cast<int>(x[i] + 0.5) - 1;
+    const int node = nearest_node(x[i]);
     index[used] = i;
     x0[used] = node + 1.0;
     t[used] = x[i] - x0[used];

@@ -1,6 +1,8 @@
 // Taylor series of a solution of Bessel's equation about a point x0 > 0, for several points at once.
 #pragma once
 
+#include <cstddef>
+
 namespace tambour::bessel {
 
 /// Two doubles of one register: every x86-64 has these, so one build gives the same bits everywhere.
@@ -8,6 +10,8 @@ using Pair [[gnu::vector_size(16)]] = double;
 inline constexpr int kPairs = 4;
 /// Points worked on at once; enough to hide the latency of the recurrence.
 inline constexpr int kLanes = 2 * kPairs;
+
+inline Pair load_pair(const double* lanes, std::size_t index) { return Pair{lanes[2 * index], lanes[2 * index + 1]}; }
 
 /// Terms summed for |t| <= 1/2 where the function oscillates or grows no faster than exp(x): the next is under 1e-18.
 inline constexpr int kNearTerms = 16;
