@@ -1,0 +1,35 @@
+// Flags that fix the disk and its basis.
+#pragma once
+
+#include <string>
+
+#include "common/command_line.hpp"
+#include "common/session.hpp"
+#include "tambour/disk_basis.hpp"
+#include "tambour/executor.hpp"
+#include "tambour/image_source.hpp"
+
+namespace tambour::tools {
+
+/// --radius (a number or `auto`), --edge, --bandlimit.
+class GeometryFlags {
+ public:
+  enum class Radius { number, number_or_auto };
+
+  /// With Radius::number the flag must be given; else `auto` is the default.
+  void add_to(CommandLine& line, Radius radius, double default_bandlimit);
+  /// `auto` looks at the stack, leaving `search` px of room, and says in a remark what it found.
+  /// Throws Error(invalid_argument) listing what is out of range. Whether the disk fits is not looked at.
+  DiskGeometry resolve(const ImageSource& source, double search, Session& session) const;
+
+ private:
+  std::string radius_;
+  bool may_be_auto_ = false;
+  std::string edge_ = "dirichlet";
+  double bandlimit_ = 0;
+};
+
+/// Throws Error(bad_input) with the file's name unless the disk fits into the frame.
+void require_disk_in_frame(const ImageSource& source, Centre centre, double radius);
+
+}  // namespace tambour::tools

@@ -1,0 +1,23 @@
+// Flags of the N-fold test.
+#pragma once
+
+#include <string>
+
+#include "common/command_line.hpp"
+#include "tambour/symmetry.hpp"
+
+namespace tambour::tools {
+
+/// --folds, --alpha.
+class SymmetryFlags {
+ public:
+  void add_to(CommandLine& line);
+  /// Throws Error(invalid_argument) when --folds is no range; whether the range is allowed is not looked at.
+  SymmetryOptions resolve() const;
+
+ private:
+  std::string folds_ = "2:24";
+  double alpha_ = SymmetryOptions{}.alpha;
+};
+
+}  // namespace tambour::tools
