@@ -11,8 +11,8 @@ std::string cell(double number) { return std::isfinite(number) ? fmt::format("{:
 std::string cell(const std::optional<double>& number) { return number ? cell(*number) : std::string(); }
 
 std::string text_cell(const std::string& text) {
-  const bool quote = text.find_first_of(",\"\r\n#") != std::string::npos ||
-                     (!text.empty() && (text.front() == ' ' || text.back() == ' '));
+  const bool quote = text.find_first_of(",\"\r\n") != std::string::npos ||
+                     (!text.empty() && (text.front() == ' ' || text.front() == '#' || text.back() == ' '));
   if (!quote) return text;
   std::string quoted = "\"";
   for (const char c : text) {

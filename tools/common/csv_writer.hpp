@@ -13,7 +13,8 @@ namespace tambour::tools {
 std::string cell(double number);
 /// Empty when there is no number.
 std::string cell(const std::optional<double>& number);
-/// As it is, or within double quotes where a comma, a quote, a line break or a space at an end would mislead a reader.
+/// As it is, or within double quotes where a comma, a quote, a line break, a space at an end or a leading # would
+/// mislead a reader.
 std::string text_cell(const std::string& text);
 
 /// Writes a table beside its place; commit() renames it. Throws Error(cannot_write).

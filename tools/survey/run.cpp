@@ -48,7 +48,6 @@ std::vector<std::pair<std::string, std::string>> settings_of(const StackStudyOpt
   const auto& p = options.preparation;
   return {{"Edge condition", to_string(options.geometry.edge)},
           {"Band limit", fmt::format("{:.6g} of the pixel band", options.geometry.bandlimit)},
-          {"Centres", fmt::format("searched within {:.6g} px of the frame's middle", options.search)},
           {"Folds tested", fmt::format("{} to {}", options.symmetry.first_fold, options.symmetry.last_fold)},
           {"Level of the test", fmt::format("p_noise below {:.6g}", options.symmetry.alpha)},
           {"Background",
@@ -57,8 +56,8 @@ std::vector<std::pair<std::string, std::string>> settings_of(const StackStudyOpt
                : fmt::format("{} polynomial, fitted just outside the disk and subtracted", to_string(p.background))},
           {"Contrast", p.invert_contrast ? "inverted" : "as in the file"},
           {"Scaling", p.scaling == Scaling::none ? "image units" : "standard deviation outside the disk = 1"},
-          {"Noise", noise_from_outside ? "measured outside the disk, image by image"
-                                       : "measured in high angular orders, for want of room outside the disk"},
+          {"Noise measured", noise_from_outside ? "outside the disk, image by image"
+                                                : "in high angular orders, for want of room outside the disk"},
           {"Precision", options.double_precision ? "double" : "single"}};
 }
 

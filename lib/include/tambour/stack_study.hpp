@@ -48,7 +48,7 @@ struct ImageStudy {
   CentreEstimate centre;
   NoiseSpectrum noise;
   double noise_sd = 0;
-  double signal_to_noise = 0;  ///< (power of all orders n >= 1 above noise) / (noise in them); not below 0
+  double signal_to_noise = 0;  ///< variance of the signal inside the disk / variance of the noise; at least 0
   std::optional<SymmetryEvidence> evidence;
 };
 

@@ -4,23 +4,39 @@
 
 #include <algorithm>
 #include <cmath>
+#include <numbers>
 
 #include "base/check.hpp"
 
 namespace tambour {
 namespace {
 
+using std::numbers::pi;
+
 constexpr std::size_t images_per_worker = 16;
 
-/// (power of the orders n >= 1 above noise) / (noise in them).
-double signal_to_noise(const std::vector<OrderPower>& spectrum) {
-  double power = 0, noise = 0;
-  for (const OrderPower& order : spectrum) {
-    if (order.angular_order < 1) continue;
-    power += order.power;
-    noise += order.noise_power;
+/// Mean of the expansion over the disk. Only order 0 has one: the integral of psi_0k is 2 sqrt(pi) R (-1)^{k-1} /
+/// lambda for a Dirichlet edge, and for a Neumann edge 0 but for the constant.
+double disk_mean(const DiskBasis& basis, std::span<const std::complex<double>> coefficients) {
+  double integral = 0;
+  for (std::size_t k = 0; k < basis.order(0).size(); ++k) {
+    const double root = basis.order(0)[k].root, a = coefficients[k].real();
+    if (basis.geometry().edge == Edge::dirichlet)
+      integral += a * 2 * std::sqrt(pi) * basis.radius() * (k % 2 == 0 ? 1 : -1) / root;
+    else if (root == 0)
+      integral += a * std::sqrt(pi) * basis.radius();
   }
-  return noise > 0 ? std::max(power / noise, 0.0) : 0;
+  return integral / (pi * basis.radius() * basis.radius());
+}
+
+/// Variance of the signal inside the disk over the variance of the noise per pixel, at least 0.
+double signal_to_noise(const DiskBasis& basis, std::span<const std::complex<double>> coefficients,
+                       const NoiseSpectrum& noise, double noise_sd) {
+  const double area = pi * basis.radius() * basis.radius();
+  double power = 0;
+  for (const OrderPower& order : rotational_spectrum(basis, coefficients, noise)) power += order.power;
+  const double mean = disk_mean(basis, coefficients);
+  return noise_sd > 0 ? std::max((power / area - mean * mean) / (noise_sd * noise_sd), 0.0) : 0;
 }
 
 }  // namespace
@@ -113,7 +129,7 @@ struct StackStudyPlan::Data {
     const std::vector<double> energies = raw_energies(basis, a);
     result.noise = noise_estimator.estimate(image, result.centre.centre, energies);
     result.noise_sd = result.noise.sd(basis.root_limit());
-    result.signal_to_noise = signal_to_noise(rotational_spectrum(basis, a, result.noise));
+    result.signal_to_noise = signal_to_noise(basis, a, result.noise, result.noise_sd);
     if (centre_finder) centre_finder->add_covariance(result.centre, image, result.noise);
     if (symmetry_test) result.evidence = symmetry_test->evaluate(symmetry_test->whitened(energies, result.noise));
   }
@@ -141,16 +157,15 @@ void StackStudyPlan::rebuild(std::span<const std::complex<double>> coefficients,
   const auto terms = static_cast<std::ptrdiff_t>(coefficients.size());
   if (d.fine) {
     auto workspace = d.fine->make_workspace();
-    d.fine->synthesise({coefficients.data(), 1, terms}, {&centre, 1}, {out.data, 1, d.rows, d.columns, 0, out.row_stride},
-                       workspace);
+    d.fine->synthesise({coefficients.data(), 1, terms}, {&centre, 1},
+                       {out.data, 1, d.rows, d.columns, 0, out.row_stride}, workspace);
     return;
   }
   auto workspace = d.coarse->make_workspace();
   const std::vector<std::complex<float>> single(coefficients.begin(), coefficients.end());
   std::vector<float> image(d.rows * d.columns);
   d.coarse->synthesise({single.data(), 1, terms}, {&centre, 1}, {image.data(), 1, d.rows, d.columns}, workspace);
-  for (std::ptrdiff_t y = 0; y < d.rows; ++y)
-    std::copy_n(image.begin() + y * d.columns, d.columns, out.row(y));
+  for (std::ptrdiff_t y = 0; y < d.rows; ++y) std::copy_n(image.begin() + y * d.columns, d.columns, out.row(y));
 }
 
 const SymmetryTest* StackStudyPlan::symmetry_test() const noexcept {
