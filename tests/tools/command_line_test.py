@@ -167,7 +167,7 @@ class Skipping(ToolCase):
         self.assertEqual(list(numpy.isnan(numpy.load(self.path("d.npy"))).all(axis=1)),
                          [False, True, False, True, False])
         self.tool("describe", "c.h5", "-o", "d.csv", "--max-skipped", "2")
-        self.assertEqual(json.load(open(self.path("d.csv.json")))["skipped_images"], [1, 3])
+        self.assertEqual(json.loads(self.path("d.csv.json").read_text())["skipped_images"], [1, 3])
 
 
 class Overwriting(ToolCase):

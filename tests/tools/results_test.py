@@ -297,7 +297,7 @@ class Describe(ToolCase):
         self.tool("analyse", "p.mrc", "-o", "c.h5", "--radius", 16)
         for name in ["d.npy", "d.csv", "d.h5"]:
             self.tool("describe", "c.h5", "-o", name, "--kind", "magnitude", "--bandlimit", 0.5)
-            layout = json.load(open(self.path(name + ".json")))
+            layout = json.loads(self.path(name + ".json").read_text())
             self.assertEqual((layout["kind"], layout["bandlimit"], layout["images"]), ("magnitude", 0.5, 3))
             self.assertEqual(len(layout["names"]), layout["size"])
             self.assertEqual(layout["source"][0]["sha256"], hashlib.sha256(self.path("c.h5").read_bytes()).hexdigest())

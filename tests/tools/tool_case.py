@@ -75,7 +75,7 @@ def read_table(path):
 
 def body(path):
     """A table without its comments, which name the command and so differ between runs."""
-    return [line for line in open(path).read().splitlines() if not line.startswith("#")]
+    return [line for line in path.read_text().splitlines() if not line.startswith("#")]
 
 
 def noise_stack(images=4, rows=48, columns=48, seed=1):

@@ -63,6 +63,9 @@ void CentreFlags::add_to(CommandLine& line) {
   line.add_text("--centre", centre_, "X,Y", "Centre of all images in pixels (default: the frame's middle)");
   line.add_text("--centres", file_, "FILE", "Table with the columns image, x, y, such as tambour-locate writes");
   line.exclude("--centres", "--centre");
+  line.add_check([this] {
+    if (!centre_.empty()) parse_pair("--centre", centre_);
+  });
 }
 
 Centres CentreFlags::resolve(const ImageSource& source, double radius, Session& session) const {

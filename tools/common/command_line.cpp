@@ -141,6 +141,7 @@ bool CommandLine::parse(const Arguments& arguments, std::ostream& out) {
   } catch (const CLI::ParseError& problem) {
     throw Error(ErrorCode::invalid_argument, problem.what());
   }
+  for (const auto& check : checks_) check();
   return true;
 }
 

@@ -43,6 +43,8 @@ class CommandLine {
 
   void require(const std::string& flag);
   void exclude(const std::string& flag, const std::string& other);
+  /// Called at the end of parse(), before any file is touched; throws Error(invalid_argument) on values out of range.
+  void add_check(std::function<void()> check) { checks_.push_back(std::move(check)); }
 
   /// False when --help or --version has been answered on `out` and nothing is left to do.
   /// Throws Error(invalid_argument) on a usage error.
@@ -71,6 +73,7 @@ class CommandLine {
 
   std::string tool_;
   std::unique_ptr<Parser> parser_;
+  std::vector<std::function<void()>> checks_;
   std::string command_;
   std::string out_;
   bool force_ = false;

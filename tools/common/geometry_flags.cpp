@@ -27,18 +27,23 @@ void GeometryFlags::add_to(CommandLine& line, Radius radius, double default_band
   line.add_choice("--edge", edge_, {to_string(Edge::dirichlet), to_string(Edge::neumann)},
                   "Condition at the rim: dirichlet for isolated objects, neumann for fields that fill the disk");
   line.add_number("--bandlimit", bandlimit_, "Share of the pixel band that is used, 0 to 1");
+  line.add_check([this] { geometry(); });
 }
 
-DiskGeometry GeometryFlags::resolve(const ImageSource& source, double search, Session& session) const {
+bool GeometryFlags::automatic() const { return may_be_auto_ && radius_ == "auto"; }
+
+DiskGeometry GeometryFlags::geometry() const {
   DiskGeometry geometry;
   geometry.edge = edge_ == to_string(Edge::neumann) ? Edge::neumann : Edge::dirichlet;
   geometry.bandlimit = bandlimit_;
-  const bool automatic = may_be_auto_ && radius_ == "auto";
-  geometry.radius = automatic ? smallest_radius : parse_number("--radius", radius_);
-  std::string problems;
-  for (const auto& problem : geometry.problems()) problems += (problems.empty() ? "" : "; ") + problem;
-  if (!problems.empty()) throw Error(ErrorCode::invalid_argument, problems);
-  if (automatic) {
+  geometry.radius = automatic() ? smallest_radius : parse_number("--radius", radius_);
+  refuse_if_any(geometry.problems());
+  return geometry;
+}
+
+DiskGeometry GeometryFlags::resolve(const ImageSource& source, double search, Session& session) const {
+  DiskGeometry geometry = this->geometry();
+  if (automatic()) {
     const RadiusEstimate found = estimate_radius(source, search, session.executor());
     geometry.radius = found.radius;
     session.remark(fmt::format("radius {:.6g} px taken from {} images: {}", found.radius, found.images,

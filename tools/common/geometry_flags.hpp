@@ -19,10 +19,14 @@ class GeometryFlags {
   /// With Radius::number the flag must be given; else `auto` is the default.
   void add_to(CommandLine& line, Radius radius, double default_bandlimit);
   /// `auto` looks at the stack, leaving `search` px of room, and says in a remark what it found.
-  /// Throws Error(invalid_argument) listing what is out of range. Whether the disk fits is not looked at.
+  /// Whether the disk fits into the frame is not looked at.
   DiskGeometry resolve(const ImageSource& source, double search, Session& session) const;
 
  private:
+  bool automatic() const;
+  /// With the smallest radius in place of `auto`. Throws Error(invalid_argument).
+  DiskGeometry geometry() const;
+
   std::string radius_;
   bool may_be_auto_ = false;
   std::string edge_ = "dirichlet";

@@ -29,6 +29,7 @@ void ImageFlags::add_to(CommandLine& line) {
   line.add_integer("--channel", channel_, 0, most_channels - 1, "Channel of colour images, red = 0 (default: luma)");
   line.add_number("--pixel-size", pixel_size_, "Size of a pixel, instead of what the files tell");
   line.add_text("--unit", unit_, "UNIT", "Unit of --pixel-size: angstrom (default), nanometre, micrometre, …");
+  line.add_check([this] { pixel_size_of(pixel_size_, unit_); });
 }
 
 std::unique_ptr<FileSource> ImageFlags::open(Session& session) const {

@@ -74,6 +74,10 @@ std::vector<std::string> split(const std::string& text, char separator) {
   return parts;
 }
 
+void refuse_if_any(const std::vector<std::string>& problems) {
+  if (!problems.empty()) throw Error(ErrorCode::invalid_argument, fmt::format("{}", fmt::join(problems, "; ")));
+}
+
 std::string shell_quote(const std::string& word) {
   constexpr std::string_view harmless = "abcdefghijklmnopqrstuvwxyzABCDEFGHIJKLMNOPQRSTUVWXYZ0123456789_@%+=:,./-";
   if (!word.empty() && word.find_first_not_of(harmless) == std::string::npos) return word;

@@ -19,6 +19,9 @@ std::pair<double, double> parse_pair(const std::string& what, const std::string&
 /// Parts between separators, spaces around them dropped.
 std::vector<std::string> split(const std::string& text, char separator);
 
+/// Throws Error(invalid_argument) naming every problem of an options struct, if there is any.
+void refuse_if_any(const std::vector<std::string>& problems);
+
 /// One word for a POSIX shell: quoted only when it has to be.
 std::string shell_quote(const std::string& word);
 

@@ -2,6 +2,7 @@
 
 #include <fmt/format.h>
 
+#include "common/parse.hpp"
 #include "tambour/error.hpp"
 
 namespace tambour::tools {
@@ -13,6 +14,7 @@ void StudyFlags::add_batch(CommandLine& line) {
 
 void StudyFlags::add_search(CommandLine& line) {
   line.add_number("--search", search_, "Centres are looked for within this many pixels of the frame's middle");
+  line.add_check([this] { search(); });
 }
 
 void StudyFlags::add_precision(CommandLine& line) {
@@ -32,8 +34,7 @@ void StudyFlags::apply(StackStudyOptions& options) const {
   options.search = search();
   options.double_precision = precision_ == "double";
   options.batch = static_cast<std::size_t>(batch_);
-  const auto problems = options.problems();
-  if (!problems.empty()) throw Error(ErrorCode::invalid_argument, fmt::format("{}", fmt::join(problems, "; ")));
+  refuse_if_any(options.problems());
 }
 
 }  // namespace tambour::tools

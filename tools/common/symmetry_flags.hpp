@@ -12,7 +12,6 @@ namespace tambour::tools {
 class SymmetryFlags {
  public:
   void add_to(CommandLine& line);
-  /// Throws Error(invalid_argument) when --folds is no range; whether the range is allowed is not looked at.
   SymmetryOptions resolve() const;
 
  private:

@@ -6,10 +6,10 @@
 
 #include "common/coefficient_batches.hpp"
 #include "common/descriptor_layout.hpp"
+#include "common/parse.hpp"
 #include "common/session.hpp"
 #include "describe/descriptor_output.hpp"
 #include "tambour/descriptors.hpp"
-#include "tambour/error.hpp"
 #include "tambour/files.hpp"
 
 namespace tambour::tools::describe {
@@ -33,8 +33,7 @@ struct Flags {
   DescriptorOptions resolve() const {
     DescriptorOptions resolved = options;
     resolved.kind = kind == to_string(DescriptorKind::gram) ? DescriptorKind::gram : DescriptorKind::magnitude;
-    const auto problems = resolved.problems();
-    if (!problems.empty()) throw Error(ErrorCode::invalid_argument, fmt::format("{}", fmt::join(problems, "; ")));
+    refuse_if_any(resolved.problems());
     return resolved;
   }
 };

@@ -1,10 +1,10 @@
-// Numbers in a given byte order, made from and into bytes by shifts: right on hosts of either order.
+// Numbers in a given byte order, on hosts of either order.
 #pragma once
 
 #include <bit>
-#include <concepts>
 #include <cstddef>
 #include <cstdint>
+#include <cstring>
 #include <type_traits>
 
 namespace tambour {
@@ -12,46 +12,42 @@ namespace tambour {
 constexpr bool host_is_big_endian = std::endian::native == std::endian::big;
 
 namespace detail {
+
 template <std::size_t bytes>
-struct UnsignedOf;
-template <>
-struct UnsignedOf<1> {
-  using type = std::uint8_t;
-};
-template <>
-struct UnsignedOf<2> {
-  using type = std::uint16_t;
-};
-template <>
-struct UnsignedOf<4> {
-  using type = std::uint32_t;
-};
-template <>
-struct UnsignedOf<8> {
-  using type = std::uint64_t;
-};
+using UnsignedOf = std::conditional_t<
+    bytes == 1, std::uint8_t,
+    std::conditional_t<bytes == 2, std::uint16_t, std::conditional_t<bytes == 4, std::uint32_t, std::uint64_t>>>;
+
+// Written as shifts of halves, which compilers turn into one instruction.
+template <class Bits>
+constexpr Bits reversed(Bits bits) {
+  if constexpr (sizeof(Bits) == 1) {
+    return bits;
+  } else {
+    using Half = UnsignedOf<sizeof(Bits) / 2>;
+    constexpr int half_bits = 4 * sizeof(Bits);
+    const Bits high = reversed(static_cast<Half>(bits)), low = reversed(static_cast<Half>(bits >> half_bits));
+    return static_cast<Bits>(high << half_bits | low);
+  }
+}
+
 }  // namespace detail
 
-/// The number whose bytes begin at `from`.
+/// The number whose bytes begin at `from`, which need not be aligned.
 template <class T>
 requires std::is_arithmetic_v<T> T load(const std::byte* from, bool big_endian) {
-  using Bits = typename detail::UnsignedOf<sizeof(T)>::type;
-  Bits bits = 0;
-  for (std::size_t i = 0; i < sizeof(T); ++i) {
-    const auto byte = std::to_integer<Bits>(from[big_endian ? sizeof(T) - 1 - i : i]);
-    bits = static_cast<Bits>(bits | static_cast<Bits>(byte << (8 * i)));
-  }
-  return std::bit_cast<T>(bits);
+  detail::UnsignedOf<sizeof(T)> bits;
+  std::memcpy(&bits, from, sizeof(T));
+  return std::bit_cast<T>(big_endian == host_is_big_endian ? bits : detail::reversed(bits));
 }
 
 /// Writes the bytes of `value` to `to`.
 template <class T>
 requires std::is_arithmetic_v<T>
 void store(std::byte* to, T value, bool big_endian) {
-  using Bits = typename detail::UnsignedOf<sizeof(T)>::type;
-  const auto bits = std::bit_cast<Bits>(value);
-  for (std::size_t i = 0; i < sizeof(T); ++i)
-    to[big_endian ? sizeof(T) - 1 - i : i] = static_cast<std::byte>((bits >> (8 * i)) & 0xFF);
+  auto bits = std::bit_cast<detail::UnsignedOf<sizeof(T)>>(value);
+  if (big_endian != host_is_big_endian) bits = detail::reversed(bits);
+  std::memcpy(to, &bits, sizeof(T));
 }
 
 }  // namespace tambour
