@@ -21,6 +21,7 @@ BIN = pathlib.Path(os.environ.get("TAMBOUR_BIN", SOURCE / "build/release/bin")).
 PICTURES = pathlib.Path(skimage.__file__).parent / "data"
 LUMA = numpy.array([0.299, 0.587, 0.114])  # ITU-R BT.601
 BANDLIMIT = 0.9
+AMPLIFIED = 4  # residuals in the pictures
 
 
 def tool(name, *arguments):
@@ -81,7 +82,8 @@ def main():
             share = [(left[part] ** 2).sum() / variance for part in (inside, inside & ~rim, rim)]
             print(f"{name:14} {edge:10} {share[0]:10.4f} {share[1]:8.4f} {share[2]:8.4f} "
                   f"{beyond_the_band(image, inside):12.4f}")
-            rows += [numpy.where(inside, image - left, image.min()), numpy.where(inside, left + image.mean(), image.min())]
+            rows += [numpy.where(inside, image - left, image.min()),
+                     numpy.where(inside, AMPLIFIED * left + image.mean(), image.min())]
         sheet = numpy.hstack(rows)
         sheet = numpy.clip((sheet - image.min()) / (image.max() - image.min()), 0, 1)
         skimage.io.imsave(folder / f"{name}.png", (255 * sheet).astype(numpy.uint8), check_contrast=False)
@@ -90,7 +92,7 @@ Shares of the variance inside the disk. `inner` and `rim` (the outermost tenth o
 A picture of a field does not end at the rim. Dirichlet functions vanish there, so their sum falls short at the rim however many
 terms there are, and ripples inwards; Neumann functions are level there and lose only slopes. What remains with them is mostly
 texture finer than the band limit, which no term holds (`beyond band`).
-Pictures in {folder}: original; Neumann rebuilt, residual; Dirichlet rebuilt, residual (mid-grey is zero).""")
+Pictures in {folder}: original; Neumann rebuilt, residual; Dirichlet rebuilt, residual ({AMPLIFIED} times, mid-grey is zero).""")
 
 
 if __name__ == "__main__":

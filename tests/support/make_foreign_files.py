@@ -282,8 +282,9 @@ def png_chunk(kind, data):
 def plain_png(array, bits, colour_type, extra=b""):
     rows, columns = array.shape[:2]
     lines = b"".join(b"\0" + row.astype(">u2" if bits == 16 else "u1").tobytes() for row in array)
-    return (b"\x89PNG\r\n\x1a\n" + png_chunk(b"IHDR", struct.pack(">IIBBBBB", columns, rows, bits, colour_type, 0, 0, 0))
-            + extra + png_chunk(b"IDAT", zlib.compress(lines)) + png_chunk(b"IEND", b""))
+    header = struct.pack(">IIBBBBB", columns, rows, bits, colour_type, 0, 0, 0)
+    return (b"\x89PNG\r\n\x1a\n" + png_chunk(b"IHDR", header) + extra + png_chunk(b"IDAT", zlib.compress(lines))
+            + png_chunk(b"IEND", b""))
 
 
 EXIF = b"MM\0\x2A\0\0\0\x08\0\x01" + struct.pack(">HHIHH", 274, 3, 1, 6, 0) + b"\0\0\0\0"
@@ -368,10 +369,9 @@ def write_hdf5():
                 file.create_dataset("deep/er/stack", data=array)
                 file["deep/er/stack"].attrs["pixel_size"] = 1.7
                 file["deep/er/stack"].attrs["unit"] = "nm"
-            expect(f"{name}::/deep/er/stack", scale=scale, offset=offset, tolerance=ROUNDING.get(kind, 0), pixel_size=1.7,
-                   unit="nanometre")
-            expect(name, scale=scale, offset=offset, tolerance=ROUNDING.get(kind, 0), pixel_size=1.7, unit="nanometre",
-                   remark="/deep/er/stack")
+            facts = dict(scale=scale, offset=offset, tolerance=ROUNDING.get(kind, 0), pixel_size=1.7, unit="nanometre")
+            expect(f"{name}::/deep/er/stack", **facts)
+            expect(name, remark="/deep/er/stack", **facts)
     array = stored("f4")[0]
     facts = dict(scale=0.375, offset=-11.5)
     with h5py.File(folder / "many.h5", "w", userblock_size=512) as file:

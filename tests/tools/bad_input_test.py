@@ -146,6 +146,15 @@ class Disks(ToolCase):
             self.refused("symmetry", "x.npy", "-o", "o.csv", "--radius", "16", "--folds", folds, code=2, says=[says])
         self.refused("symmetry", "x.npy", "-o", "o.csv", "--radius", "16", "--alpha", "0.5", code=2, says=["0.5"])
 
+    def test_no_room_for_the_background_that_was_asked_for(self):
+        self.save("tight.npy", noise_stack(rows=8, columns=8))
+        self.refused("analyse", "tight.npy", "-o", "o.h5", "--radius", "4", "--background", "linear", code=2,
+                     says=["background", "20 pixels", "radius 4"])
+        self.tool("analyse", "tight.npy", "-o", "o.h5", "--radius", "4")
+
+    def test_no_room_to_search(self):
+        self.refused("locate", "x.npy", "-o", "o.csv", "--radius", "24", code=3, says=["x.npy", "24", "up to 23", "search"])
+
     def test_frame_too_small_for_any_disk(self):
         self.save("small.npy", noise_stack(rows=10, columns=10))
         self.refused("locate", "small.npy", "-o", "o.csv", code=3, says=["small.npy", "10"])

@@ -11,6 +11,7 @@
 #include "common/exit_codes.hpp"
 #include "common/guarded_main.hpp"
 #include "common/parse.hpp"
+#include "common/preparation_flags.hpp"
 #include "tambour/error.hpp"
 #include "tambour/files.hpp"
 
@@ -94,7 +95,7 @@ TEST(Cells, WhatIsWrittenIsReadBackByTheTableReader) {
 int throws(ErrorCode code) { throw Error(code, "something is wrong"); }
 
 TEST(GuardedRun, EveryKindOfErrorHasItsExitCodeAndOneSentence) {
-  const auto code_of = [](Run run) {
+  const auto code_of = [](tools::Run run) {
     std::ostringstream out, err;
     const int code = guarded_run("tambour-test", run, {}, out, err);
     EXPECT_EQ(out.str(), "");
@@ -112,7 +113,7 @@ TEST(GuardedRun, EveryKindOfErrorHasItsExitCodeAndOneSentence) {
 }
 
 TEST(GuardedRun, AnUnwritableStandardOutputSpoilsTheExitCode) {
-  const Run writes = [](const Arguments&, std::ostream& out, std::ostream&) {
+  const tools::Run writes = [](const Arguments&, std::ostream& out, std::ostream&) {
     out << "result\n";
     return 0;
   };
@@ -146,6 +147,23 @@ TEST(CommandLine, TakesNegativeValuesAndListsEveryOption) {
       {"--out", "x y"},     {"--force", "false"}, {"--quiet", "false"}, {"--json", "false"},
       {"--number", "-2.5"}, {"--centre", "-3,4"}, {"--kind", "a"},      {"--flag", "false"}};
   EXPECT_EQ(told, expected);
+}
+
+TEST(PreparationFlags, ADefaultBackgroundGivesWayWhereTheFrameHasNoRoomForIt) {
+  for (const bool asked : {false, true}) {
+    CommandLine line("tambour-test", "Tests.");
+    PreparationFlags flags;
+    flags.add_to(line, Background::quadratic);
+    std::ostringstream out, err;
+    ASSERT_TRUE(line.parse(asked ? Arguments{"-o", "x", "--background", "quadratic"} : Arguments{"-o", "x"}, out));
+    Session session(line, out, err);
+    EXPECT_EQ(flags.resolve(64, 64, 24, session).background, Background::quadratic);
+    EXPECT_EQ(err.str(), "");
+    // 12 pixels of an 8 x 8 frame lie outside a disk of 4 px, within 5.2 px; a background needs 20.
+    EXPECT_EQ(flags.resolve(8, 8, 4, session).background, asked ? Background::quadratic : Background::none);
+    EXPECT_EQ(err.str().find("too few pixels outside") != std::string::npos, !asked);
+    EXPECT_EQ(session.remarks().size(), asked ? 0U : 1U);
+  }
 }
 
 TEST(CommandLine, RefusesWhatIsNotAllowed) {

@@ -2,16 +2,14 @@
 an empty folder of its own with the tools on the PATH. Blocks marked otherwise (console, text, cpp) are not run."""
 
 import os
-import pathlib
 import re
 import shutil
 import subprocess
 import tempfile
 import unittest
 
-from tool_case import BIN
+from tool_case import BIN, SOURCE
 
-SOURCE = pathlib.Path(os.environ.get("TAMBOUR_SOURCE", pathlib.Path(__file__).resolve().parents[2]))
 BLOCK = re.compile(r"^```sh\n(.*?)^```$", re.MULTILINE | re.DOTALL)
 
 
@@ -42,7 +40,9 @@ class Commands(unittest.TestCase):
             self.assertEqual(done.returncode, 0, f"{block}\nstdout: {done.stdout}\nstderr: {done.stderr}")
 
     def test_every_tool_has_a_page_with_an_example_and_all_its_options(self):
-        for tool in sorted(BIN.glob("tambour-*")):
+        tools = sorted(BIN.glob("tambour-*"))
+        self.assertGreaterEqual(len(tools), 8, f"{BIN} holds the tools")
+        for tool in tools:
             page = SOURCE / "docs" / "tools" / f"{tool.name.removeprefix('tambour-')}.md"
             with self.subTest(tool=tool.name):
                 self.assertTrue(page.exists(), page)

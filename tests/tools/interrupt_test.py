@@ -29,10 +29,10 @@ class Interrupt(ToolCase):
             self.interrupted("phantom", "-o", "p.mrc", "--truth", "t.csv", "--images", 500000, kind=kind)
 
     def test_of_work_on_a_stack(self):
-        self.phantom("x.mrc", images=20000, size=96, radius=36)
-        self.interrupted("locate", "x.mrc", "-o", "l.csv", "--radius", 36)
-        self.interrupted("analyse", "x.mrc", "-o", "c.h5", "--radius", 36, "--precision", "double")
-        self.interrupted("symmetry", "x.mrc", "-o", "s.csv", "--radius", 36, "--stack")
+        self.phantom("x.mrc", images=4000, size=96, radius=36)
+        self.interrupted("locate", "x.mrc", "-o", "l.csv", "--radius", 36, "--threads", 1)
+        self.interrupted("analyse", "x.mrc", "-o", "c.h5", "--radius", 36, "--precision", "double", "--threads", 1)
+        self.interrupted("symmetry", "x.mrc", "-o", "s.csv", "--radius", 36, "--stack", "--threads", 1)
 
     def test_of_drawing_the_null_law(self):
         self.phantom("x.mrc", images=2, size=256, radius=110)

@@ -133,7 +133,6 @@ TEST(Generator, InformationOfColouredNoiseIsThatOfWhiteWhereTheSpectrumIsFlat) {
   // A pattern of one frequency q sees the noise as if it were white with the variance S(q).
   const ColouredNoise noise(64, 64);
   double mean = 0;
-  std::vector<double> spectrum;
   for (int i = 0; i < 64; ++i)
     for (int j = 0; j < 64; ++j) {
       const double qx = 2 * std::numbers::pi * std::min(i, 64 - i) / 64,

@@ -9,7 +9,7 @@ import h5py
 import mrcfile
 import numpy
 
-from tool_case import ToolCase, body, noise_stack
+from tool_case import ToolCase, body
 
 SYMMETRY_COLUMNS = ("image,source,status,centre_x,centre_y,se_x,se_y,radius,noise_sd,fold,ln_bf,p_noise,p_structure,"
                     "q_value,verdict,angle,se_angle").split(",")
@@ -63,17 +63,16 @@ class Phantom(ToolCase):
             self.assertAlmostEqual((power / wanted)[q < 0.5].mean(), 1, delta=0.05)
 
     def test_information_is_that_of_a_shift(self):
-        """The squared change under a small shift, over the noise's variance, against the table."""
-        for step in ["0", "1e-9"]:
-            self.phantom(f"p{step}.npy", "--truth", f"t{step}.csv", "--noise", "none", "--centre-spread", "0",
-                         images=1, size=64, radius=24)
-        image = numpy.load(self.path("p0.npy"))[0].astype(float)
-        along_y, along_x = numpy.gradient(image)
+        """The table against the derivatives of the noise-free image, by its Fourier transform."""
+        self.phantom("p.npy", "--noise", "none", "--centre-spread", "0", images=1, size=64, radius=24)
+        image = numpy.load(self.path("p.npy"))[0].astype(float)
+        q = 2j * numpy.pi * numpy.fft.fftfreq(64)
+        transform = numpy.fft.fft2(image)
+        along_x, along_y = numpy.fft.ifft2(transform * q).real, numpy.fft.ifft2(transform * q[:, None]).real
         wanted = 0.5 * ((along_x**2).sum() + (along_y**2).sum()) * 0.3
         self.phantom("n.npy", "--truth", "n.csv", "--centre-spread", "0", images=1, size=64, radius=24, snr=0.3)
         told = float(self.table("n.csv")[0]["information"])
-        # Central differences lose some of the gradient of blobs of 1.2 to 2 px: (sin q / q)^2 at q = 1/1.5 is 0.86.
-        self.assertTrue(0.75 < wanted / told < 1.0, (wanted, told))
+        self.assertAlmostEqual(wanted / told, 1, places=5)
 
     def test_is_the_same_for_a_seed_whatever_the_threads(self):
         flags = ["--mix", "ring:5,broken:5,field", "--noise", "coloured", "--gradient", 1, "--contaminant", 0.5]
@@ -106,9 +105,10 @@ class Locate(ToolCase):
             for ours, theirs, se in [("x", "centre_x", "se_x"), ("y", "centre_y", "se_y")]:
                 error = numbers(rows, ours) - numbers(truth, theirs)
                 bound = numpy.sqrt(1 / numbers(truth, "information"))
-                # The bound is that of a known pattern; measured: 1.1 to 1.3 times it over 60 images (s.e. 9 %).
+                # The bound is that of a known pattern. Over 60 images a ratio has a standard error of 9 %; measured: 1.10
+                # to 1.34 times the bound, and 0.86 to 1.05 times the error that is told.
                 self.assertLess(rms(error / bound), 1.6)
-                self.assertTrue(0.6 < rms(error / numbers(rows, se)) < 1.5, rms(error / numbers(rows, se)))
+                self.assertTrue(0.73 < rms(error / numbers(rows, se)) < 1.27, rms(error / numbers(rows, se)))
 
     def test_says_when_the_border_of_the_search_is_hit(self):
         self.phantom("p.npy", "--noise", "none", "--centre-spread", "0", images=1, size=64, radius=16)
@@ -119,11 +119,6 @@ class Locate(ToolCase):
         done = self.tool("locate", "s.npy", "-o", "m.csv", "--radius", 16, "--search", 8)
         self.assertNotIn("border", done.stderr)
         self.assertAlmostEqual(float(self.table("m.csv")[0]["x"]), 36.5, delta=0.3)
-
-    def test_says_when_no_background_can_be_fitted(self):
-        self.save("x.npy", noise_stack(2, rows=33, columns=33))
-        done = self.tool("locate", "x.npy", "-o", "l.csv", "--radius", 16, "--search", 1)
-        del done
 
 
 class Coefficients(ToolCase):
@@ -146,8 +141,8 @@ class Coefficients(ToolCase):
         self.tool("analyse", "p.npy", "-o", "c.h5", "--radius", 28, "--precision", "double")
         self.tool("synthesise", "c.h5", "-o", "r.npy", "--pixel-type", "float64")
         image, rebuilt = numpy.load(self.path("p.npy")).astype(float), numpy.load(self.path("r.npy"))
-        # Blobs end well inside the disk; what the band limit of 0.9 and the rim cut off is measured: 5e-4 of the rms.
-        self.assertLess(rms(rebuilt - image) / rms(image), 0.01)
+        # What the band limit of 0.9 and the rim cut off was measured to be 4.5e-4 of the rms.
+        self.assertLess(rms(rebuilt - image) / rms(image), 0.001)
         self.assertEqual(abs(rebuilt[0, 0]).max(), 0)
 
     def test_analysis_of_a_synthesis_gives_the_coefficients_back(self):
@@ -157,8 +152,8 @@ class Coefficients(ToolCase):
         self.tool("analyse", "r.npy", "-o", "d.h5", "--radius", 20, "--bandlimit", 0.5, "--centre", "30.2,33.4")
         with h5py.File(self.path("c.h5")) as first, h5py.File(self.path("d.h5")) as second:
             a, b = first["coefficients"][:], second["coefficients"][:]
-        # The functions are nearly orthonormal on the pixel grid at this band limit; the sharp rim costs most.
-        self.assertLess(abs(a - b).max() / abs(a).max(), 0.05)
+        # Outside the disk the synthesis is 0, where the functions are not band-limited: measured 7e-5.
+        self.assertLess(abs(a - b).max() / abs(a).max(), 2e-4)
 
     def test_background_comes_back(self):
         self.phantom("p.npy", "--noise", "none", images=2, size=64, radius=20)
@@ -170,9 +165,9 @@ class Coefficients(ToolCase):
         self.tool("synthesise", "c.h5", "-o", "r.npy", "--add-background", "--pixel-type", "float64")
         rebuilt = numpy.load(self.path("r.npy"))
         inside = disk((64, 64), 31.5, 31.5, 18)
-        self.assertLess(rms((rebuilt - image)[:, inside]), 0.05)
+        self.assertLess(rms((rebuilt - image)[:, inside]), 0.002)  # the object has unit variance; measured 5.7e-4
         outside = ~disk((64, 64), 31.5, 31.5, 24)
-        self.assertLess(rms((rebuilt - image)[:, outside]), 0.05)
+        self.assertLess(rms((rebuilt - image)[:, outside]), 0.02)  # measured 0.009: the object's own tails
         done = self.tool("synthesise", "c.h5", "-o", "s.npy")
         self.assertIn("contrast was inverted", done.stderr)
 
@@ -225,7 +220,7 @@ class Spectrum(ToolCase):
         self.assertEqual([float(row["ring_outer"]) for row in rings], [3.0 * (ring + 1) for ring in range(8)])
         whole = next(row for row in self.table("o.csv") if row["image"] == "0" and row["angular_order"] == "6")
         total = numbers(rings, "power").sum()
-        self.assertAlmostEqual(total / float(whole["power"]), 1, delta=0.1)
+        self.assertAlmostEqual(total / float(whole["power"]), 1, delta=0.001)  # measured 1e-4: v_nk and the radial rule
         middle = (numbers(rings, "power") * (numbers(rings, "ring_inner") + 1.5)).sum() / total
         self.assertTrue(0.35 * 24 < middle < 0.85 * 24, middle)  # subunits lie at 0.45 to 0.83 R
 
@@ -245,8 +240,8 @@ class Symmetry(ToolCase):
         turns = numpy.exp(2j * numpy.pi * apart / (360 / 7))
         spread = numpy.angle(turns / numpy.mean(turns)) * (360 / 7) / (2 * numpy.pi)
         se = numpy.array([float(row["se_angle"]) for row, good in zip(rows, right) if good])
-        self.assertLess(rms(spread), 3)
-        self.assertTrue(0.5 < rms(spread) / rms(se) < 3, (rms(spread), rms(se)))
+        self.assertLess(rms(spread), 0.75)  # degrees; measured 0.48, told 0.53; over 40 images the s.e. is 11 %
+        self.assertTrue(0.67 < rms(spread) / rms(se) < 1.33, (rms(spread), rms(se)))
         stack = self.table("stack.csv")
         self.assertEqual(list(stack[0]), "fold,ln_bf,p_noise,p_structure,q_value,verdict,images".split(","))
         self.assertEqual((stack[0]["fold"], stack[0]["verdict"], stack[0]["images"]), ("7", "best_supported", "40"))

@@ -11,7 +11,8 @@ import unittest
 
 import numpy
 
-BIN = pathlib.Path(os.environ.get("TAMBOUR_BIN", "build/release/bin")).resolve()
+SOURCE = pathlib.Path(os.environ.get("TAMBOUR_SOURCE", pathlib.Path(__file__).resolve().parents[2]))
+BIN = pathlib.Path(os.environ.get("TAMBOUR_BIN", SOURCE / "build" / "release" / "bin")).resolve()
 TOOLS = ["locate", "analyse", "synthesise", "spectrum", "symmetry", "describe", "phantom"]
 
 

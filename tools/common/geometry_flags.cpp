@@ -2,6 +2,8 @@
 
 #include <fmt/format.h>
 
+#include <algorithm>
+
 #include "common/parse.hpp"
 #include "tambour/disk_transform.hpp"
 #include "tambour/error.hpp"
@@ -57,6 +59,19 @@ DiskGeometry GeometryFlags::resolve(const ImageSource& source, double search, Se
 void require_disk_in_frame(const ImageSource& source, Centre centre, double radius) {
   const ImageStatus fits = disk_in_frame(centre, radius, source.rows(), source.columns());
   if (!fits.ok()) throw Error(ErrorCode::bad_input, fmt::format("{}: {}", source.name(0), fits.reason));
+}
+
+void require_room_to_search(const ImageSource& source, double radius) {
+  constexpr double step = 1;  // px
+  const Centre middle = frame_middle(source.rows(), source.columns());
+  require_disk_in_frame(source, middle, radius);
+  if (!disk_in_frame(middle, radius + step, source.rows(), source.columns()).ok())
+    throw Error(
+        ErrorCode::bad_input,
+        fmt::format("{}: radius is {:.10g} px; allowed is up to {:.10g} px, which leaves a pixel to search for the "
+                    "centre in a frame of {} by {} px",
+                    source.name(0), radius, static_cast<double>(std::min(source.rows(), source.columns())) / 2 - step,
+                    source.columns(), source.rows()));
 }
 
 }  // namespace tambour::tools

@@ -36,4 +36,7 @@ class GeometryFlags {
 /// Throws Error(bad_input) with the file's name unless the disk fits into the frame.
 void require_disk_in_frame(const ImageSource& source, Centre centre, double radius);
 
+/// Throws Error(bad_input) unless a disk in the frame's middle fits and can be moved by a pixel each way.
+void require_room_to_search(const ImageSource& source, double radius);
+
 }  // namespace tambour::tools

@@ -68,7 +68,7 @@ int run(const Arguments& arguments, std::ostream& out, std::ostream& err) {
   const auto source = flags.images.open(session);
   options.geometry = flags.geometry.resolve(*source, flags.study.search(), session);
   flags.study.apply(options);
-  require_disk_in_frame(*source, frame_middle(source->rows(), source->columns()), options.geometry.radius);
+  require_room_to_search(*source, options.geometry.radius);
   options.preparation = flags.preparation.resolve(source->rows(), source->columns(), options.geometry.radius, session);
 
   const StackStudyPlan plan(options, source->rows(), source->columns(), session.executor());

@@ -32,7 +32,8 @@ class FileSource : public ImageSource {
 };
 
 /// Opens one or more inputs as one stack: PNG, JPEG, TIFF (multi-page), MRC2014 (.mrc .mrcs .map), .npy, HDF5
-/// (`file.h5::/path/to/dataset`), or `@list.txt` with one input a line (# comments; relative to the list's folder).
+/// (`file.h5::/path/to/dataset`; the dataset may be left out where only one can be images), or `@list.txt` with one
+/// input a line (# comments; relative to the list's folder).
 ///
 /// The stack's image size is that of its first image; others of another size are skipped when read. The kind is told
 /// from the file's first bytes, not from its name. 2-D arrays are one image, 3-D ones (images, rows, columns). A file

@@ -147,7 +147,7 @@ void Synthesis<T>::run(const std::complex<T>* coefficients, Centre centre, Image
       const double x = static_cast<double>(column) - centre.x, y = static_cast<double>(row) - centre.y;
       const double r = std::hypot(x, y);
       image(row, column) = 0;
-      if (r > radius_) continue;
+      if (!(r <= radius_)) continue;  // also where the centre is not finite
       double turn = std::atan2(y, x) / (2 * pi);
       if (turn < 0) turn += 1;
       const double u = r / spacing_ - 0.5, v = turn * angles_;

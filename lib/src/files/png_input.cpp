@@ -92,7 +92,8 @@ class PngFile final : public ImageFile {
     header_.samples = header_.kind == PixelKind::colour ? 3 : 1;
     if ((colour_type & uses_alpha) != 0) ++header_.samples;
     PictureHeader stored = header_;
-    if ((colour_type & uses_palette) != 0) stored.samples = 1;
+    needs_palette_ = (colour_type & uses_palette) != 0;
+    if (needs_palette_) stored.samples = 1;
     check_picture_size(file_->path(), stored, bits, file_->size(), deflate_expansion);
   }
 
@@ -113,7 +114,7 @@ class PngFile final : public ImageFile {
   // Moves the chunks that pixels need to the front of the file's bytes and returns their end.
   std::size_t keep_critical_chunks(std::vector<std::byte>& bytes) const {
     std::size_t kept = signature_bytes;
-    bool ended = false;
+    bool ended = false, has_palette = false, has_pixels = false;
     for (std::size_t offset = signature_bytes; !ended;) {
       if (offset + chunk_overhead > bytes.size())
         refuse_input("{}: ends before its last chunk: truncated", file_->path());
@@ -124,6 +125,10 @@ class PngFile final : public ImageFile {
                      file_->path(), length, offset, bytes.size());
       const std::string_view type(reinterpret_cast<const char*>(bytes.data() + offset + 4), 4);
       ended = type == "IEND";
+      has_palette = has_palette || type == "PLTE";
+      has_pixels = has_pixels || type == "IDAT";
+      if ((ended && !has_pixels) || (has_pixels && !has_palette && needs_palette_))
+        refuse_input("{}: has no pixels, or none whose palette comes before them: damaged", file_->path());
       if (type == "IHDR" || type == "PLTE" || type == "IDAT" || ended) {
         if (checksum(bytes.data() + offset + 4, length + 4) !=
             load<std::uint32_t>(bytes.data() + offset + 8 + length, true))
@@ -138,6 +143,7 @@ class PngFile final : public ImageFile {
 
   SharedReadFile file_;
   PictureHeader header_;
+  bool needs_palette_ = false;
   std::vector<SampleWeight> weights_;
   std::vector<std::string> remarks_;
 };
