@@ -75,7 +75,7 @@ TEST(Shells, HoldEnoughAndCoverEveryTermOfOrderTwoAndAbove) {
     double total = 0, expected = 0;
     for (std::size_t j = 0; j < shells.size(); ++j) {
       total += shells.total(j);
-      if (shells.size() > 1) EXPECT_GE(shells.total(j), 24) << "shell " << j << " at radius " << radius;
+      EXPECT_GE(shells.total(j), 24) << "shell " << j << " at radius " << radius;
     }
     for (const Term& term : basis.terms()) expected += term.angular_order >= 2 ? 2 : 0;
     EXPECT_EQ(total, expected);

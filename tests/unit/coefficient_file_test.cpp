@@ -238,6 +238,49 @@ TEST(CoefficientFile, WhatIsNoCoefficientFileIsRefused) {
   EXPECT_NE(refusal(folder / "c.h5").find("c.h5"), std::string::npos);
 }
 
+// Replaces the only place where those bytes stand in a file.
+template <class T>
+void patch(const std::string& path, T from, T to) {
+  std::string bytes = bytes_of(path);
+  const std::string old(reinterpret_cast<const char*>(&from), sizeof(T));
+  const auto place = bytes.find(old);
+  ASSERT_NE(place, std::string::npos);
+  ASSERT_EQ(bytes.find(old, place + 1), std::string::npos);
+  bytes.replace(place, sizeof(T), reinterpret_cast<const char*>(&to), sizeof(T));
+  std::ofstream(path, std::ios::binary) << bytes;
+}
+
+TEST(CoefficientFile, TermsThatAreNotThoseOfTheGeometryAreRefused) {
+  const ScratchFolder folder;
+  const std::string path = folder / "c.h5";
+  write_example<double>(path, 2, 2);
+  const double root = DiskBasis(example_header(true).geometry).terms()[20].root;
+  patch(path, root, root * (1 + 5e-13));
+  EXPECT_EQ(refusal(path), "");
+  write_example<double>(path, 2, 2, true);
+  patch(path, root, root * (1 + 5e-12));
+  EXPECT_NE(refusal(path).find("term 20"), std::string::npos) << refusal(path);
+  write_example<double>(path, 2, 2, true);
+  patch(path, 10.5, 11.5);  // the radius
+  EXPECT_NE(refusal(path).find("shape"), std::string::npos) << refusal(path);
+  write_example<double>(path, 2, 2, true);
+  patch(path, 10.5, -1.0);
+  EXPECT_NE(refusal(path).find("radius"), std::string::npos) << refusal(path);
+}
+
+TEST(CoefficientFile, ANewerSchemaIsRefused) {
+  const ScratchFolder folder;
+  const std::string path = folder / "c.h5";
+  write_example<double>(path, 1, 1);
+  std::string bytes = bytes_of(path);
+  // The attribute's name is followed by 16 bytes of type, 8 of shape, and the number.
+  const auto number = bytes.find("schema_version") + 16 + 16 + 8;
+  ASSERT_EQ(bytes.substr(number, 8), std::string("\1\0\0\0\0\0\0\0", 8));
+  bytes[number] = 2;
+  std::ofstream(path, std::ios::binary) << bytes;
+  EXPECT_NE(refusal(path).find("schema_version is 2; this program reads 1 to 1"), std::string::npos) << refusal(path);
+}
+
 TEST(CoefficientFile, ReadersInManyThreads) {
   const ScratchFolder folder;
   write_example<float>(folder / "c.h5", 40, 7);

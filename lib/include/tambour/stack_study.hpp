@@ -73,7 +73,8 @@ class StackStudyPlan {
   const DiskBasis& basis() const noexcept;
   double tolerance() const noexcept;         ///< of the transform, with the default filled in
   bool noise_from_outside() const noexcept;  ///< see NoiseEstimator::uses_outside()
-  /// Expansion to image, at any centre; pixels outside the disk are 0. Shapes: coefficients (terms), out (rows x columns).
+  /// Expansion to image, at any centre; pixels outside the disk are 0. Shapes: coefficients (terms), out (rows x
+  /// columns).
   void rebuild(std::span<const std::complex<double>> coefficients, Centre centre, ImageView<double> out) const;
   /// Null unless `test_symmetry`.
   const SymmetryTest* symmetry_test() const noexcept;
