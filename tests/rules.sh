@@ -37,7 +37,7 @@ keep() {
   local what=$1 pattern=$2 allowed=$3
   while read -r file; do
     [[ $file =~ ^lib/src/($allowed)/ ]] || fail "$file: $what belongs to: $allowed"
-  done < <(grep -rlP "#include <($pattern)" lib || true)
+  done < <(grep -rlP "#include <($pattern)" lib/src || true)
 }
 keep Boost 'boost/' 'bessel'
 keep FFTW 'fftw3' 'fourier'

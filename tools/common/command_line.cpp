@@ -6,6 +6,7 @@
 #include <algorithm>
 #include <thread>
 
+#include "common/all_versions.hpp"
 #include "common/parse.hpp"
 #include "tambour/error.hpp"
 #include "tambour/provenance.hpp"
@@ -16,7 +17,7 @@ namespace {
 
 std::string version_text(const std::string& tool) {
   std::string text = fmt::format("{} {}", tool, version());
-  for (const auto& [name, number] : library_versions()) text += fmt::format("\n  {} {}", name, number);
+  for (const auto& [name, number] : all_library_versions()) text += fmt::format("\n  {} {}", name, number);
   return text;
 }
 

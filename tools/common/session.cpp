@@ -4,6 +4,7 @@
 
 #include <limits>
 
+#include "common/all_versions.hpp"
 #include "common/exit_codes.hpp"
 #include "tambour/version.hpp"
 
@@ -37,7 +38,7 @@ void Session::skip(std::size_t image, const std::string& source, const std::stri
 }
 
 Provenance Session::provenance(const std::vector<std::string>& input_files) const {
-  Provenance provenance{line_.command(), version(), library_versions(), line_.options(), {}};
+  Provenance provenance{line_.command(), version(), all_library_versions(), line_.options(), {}};
   for (const auto& file : input_files) {
     stop_if_interrupted();
     provenance.inputs.emplace_back(file, sha256_of_file(file));

@@ -33,7 +33,7 @@ struct Term {
 
 /// What fixes a basis.
 struct DiskGeometry {
-  double radius = 0;            ///< R in pixels, may be fractional; 4 .. 4096
+  double radius = 0;            ///< R in pixels, may be fractional; 4 .. 1000
   Edge edge = Edge::dirichlet;  ///< condition at the rim
   double bandlimit = 0.9;       ///< beta: terms with root <= pi R beta; 0 < beta <= 1
 

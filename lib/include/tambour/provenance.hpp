@@ -16,7 +16,7 @@ struct Provenance {
   std::vector<std::pair<std::string, std::string>> inputs;     ///< file, SHA-256 in hexadecimal
 };
 
-/// Names and versions of the libraries underneath.
+/// Names and versions of the libraries behind the files. Those behind the numbers: see version.hpp.
 std::vector<std::pair<std::string, std::string>> library_versions();
 
 /// SHA-256 of a file, read in pieces. Throws Error(bad_input) when it cannot be read.

@@ -13,7 +13,7 @@ using std::numbers::pi;
 
 std::vector<std::string> DiskGeometry::problems() const {
   std::vector<std::string> found;
-  if (!(radius >= 4 && radius <= 4096)) found.push_back(fmt::format("radius is {} px; allowed is 4 to 4096", radius));
+  if (!(radius >= 4 && radius <= 1000)) found.push_back(fmt::format("radius is {} px; allowed is 4 to 1000", radius));
   if (!(bandlimit > 0 && bandlimit <= 1))
     found.push_back(fmt::format("bandlimit is {}; allowed is above 0 and up to 1", bandlimit));
   return found;

@@ -35,6 +35,8 @@ class Upsampling {
  public:
   /// The disk of `reach` pixels around the frame's middle is covered.
   Upsampling(int rows, int columns, double reach, double oversampling, const GriddingKernel& kernel);
+  Upsampling(const Upsampling&) = delete;  // the passes point at the axes
+  Upsampling& operator=(const Upsampling&) = delete;
 
   const FineAxis& x_axis() const noexcept { return x_; }
   const FineAxis& y_axis() const noexcept { return y_; }

@@ -20,7 +20,7 @@ namespace {
 namespace fs = std::filesystem;
 
 [[noreturn]] void refuse_existing(const std::string& path) {
-  refuse_output("{}: exists already; it is replaced only when overwriting is asked for", path);
+  refuse_output("{}: exists already and overwriting was not asked for (--force in the tools)", path);
 }
 
 // A name nobody else uses, in the same folder and so in the same file system.
