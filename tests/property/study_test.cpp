@@ -111,6 +111,24 @@ TEST(NoiseEstimator, FallsBackOnHighOrdersWithoutAnOutside) {
   EXPECT_NEAR(sum / 200, 1, 0.1);
 }
 
+TEST(NoiseEstimator, IsNeverEmpty) {
+  // Small disks have no order above 0.8 lambda, and hardly an outside.
+  for (const double radius : {4.0, 6.0, 10.0})
+    for (const std::ptrdiff_t side :
+         {std::ptrdiff_t{2} * static_cast<std::ptrdiff_t>(radius) + 2, std::ptrdiff_t{64}}) {
+      const DiskTransform<double> transform({{.radius = radius, .bandlimit = 0.8}, side, side});
+      const NoiseEstimator estimator(transform.basis(), side, side);
+      const RingStack stack(1, side, radius, 0, 1, 3);
+      const Centre middle = frame_middle(side, side);
+      const auto energies = raw_energies(transform.basis(), analyse(transform, stack.pixels[0], middle));
+      const NoiseSpectrum spectrum = estimator.estimate({stack.pixels[0].data(), side, side}, middle, energies);
+      ASSERT_FALSE(spectrum.empty()) << "radius " << radius << ", frame " << side;
+      EXPECT_GT(spectrum.at(5), 0.05);
+      EXPECT_THROW(estimator.estimate({stack.pixels[0].data(), side - 1, side}, middle, energies), Error);
+      EXPECT_THROW(estimator.estimate({stack.pixels[0].data(), side, side}, middle, {1.0}), Error);
+    }
+}
+
 TEST(NoiseSpectrum, InterpolatesItsLogarithm) {
   const NoiseSpectrum spectrum{{10, 20}, {1, 4}};
   EXPECT_EQ(spectrum.at(5), 1);
@@ -162,6 +180,54 @@ TEST(CentreFinder, SaysWhenTheCentreMayLieBeyondItsSearch) {
 
 TEST(CentreFinder, RefusesADiskWithoutRoom) {
   EXPECT_THROW(CentreFinder({.geometry = {.radius = 32, .bandlimit = 0.8}, .rows = 64, .columns = 64}), Error);
+}
+
+TEST(StackStudy, KeepsItsRelativeErrorWhateverTheUnitOfTheImage) {
+  RingStack stack(2, 48, 16, 6, 2, 17);
+  StackStudyOptions o;
+  o.geometry.radius = 16;
+  o.symmetry.draws = 2000;
+  o.symmetry.last_fold = 12;
+  SerialExecutor serial;
+  NoProgress progress;
+  const StackStudyPlan plan(o, 48, 48, serial);
+  const auto run = [&] {
+    std::vector<ImageStudy> all;
+    plan.run(stack, {}, {}, serial, progress, [&](const StudyBatch& batch) { all = batch.images; });
+    return all;
+  };
+  const auto reference = run();
+  for (const double unit : {1e-90, 1e-45, 1e38, 1e90}) {
+    RingStack scaled = stack;
+    for (auto& image : scaled.pixels)
+      for (double& pixel : image) pixel *= unit;
+    std::swap(stack.pixels, scaled.pixels);
+    const auto found = run();
+    std::swap(stack.pixels, scaled.pixels);
+    for (std::size_t i = 0; i < found.size(); ++i) {
+      ASSERT_TRUE(found[i].status.ok()) << found[i].status.reason;
+      EXPECT_EQ(found[i].evidence->fold, reference[i].evidence->fold);
+      EXPECT_NEAR(found[i].noise_sd / unit, reference[i].noise_sd, 1e-5);
+      EXPECT_NEAR(found[i].centre.centre.x, reference[i].centre.centre.x, 1e-6);
+    }
+  }
+  for (const double unit : {1e-200, 1e160}) {
+    for (auto& image : stack.pixels)
+      for (double& pixel : image) pixel *= unit;
+    EXPECT_NE(run()[0].status.reason.find("allowed is"), std::string::npos);
+    for (auto& image : stack.pixels)
+      for (double& pixel : image) pixel /= unit;
+  }
+  for (double& pixel : stack.pixels[0]) pixel += 1e9;  // taken away again by the background
+  EXPECT_TRUE(run()[0].status.ok());
+  StackStudyOptions raw = o;
+  raw.preparation.background = Background::none;
+  raw.find_centres = raw.test_symmetry = false;
+  std::vector<ImageStudy> all;
+  StackStudyPlan(raw, 48, 48, serial).run(stack, {}, {}, serial, progress, [&](const StudyBatch& b) {
+    all = b.images;
+  });
+  EXPECT_NE(all[0].status.reason.find("single precision"), std::string::npos);
 }
 
 // --- rotational power ---

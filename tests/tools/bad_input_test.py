@@ -283,5 +283,19 @@ class Phantoms(ToolCase):
         self.refused("phantom", "-o", "p.mrc", "--unit", "nanometre", code=2, says=["--pixel-size"])
 
 
+class OutputsThatAreInputs(ToolCase):
+    def test_are_never_overwritten(self):
+        self.save("a.npy", noise_stack(2))
+        self.path("list.txt").write_text("a.npy\n")
+        before = self.path("a.npy").read_bytes()
+        says = ["is an input"]
+        self.refused("analyse", "a.npy", "-o", "./a.npy", "--radius", 16, "--force", code=3, says=says)
+        self.refused("locate", "@list.txt", "-o", "list.txt", "--radius", 16, "--force", code=3, says=says)
+        self.tool("analyse", "a.npy", "-o", "c.h5", "--radius", 16)
+        for name in ("describe", "spectrum", "synthesise"):
+            self.refused(name, "c.h5", "-o", "c.h5", "--force", code=3, says=says)
+        self.assertEqual(self.path("a.npy").read_bytes(), before)
+
+
 if __name__ == "__main__":
     unittest.main()

@@ -31,8 +31,10 @@ std::size_t image_of_row(const Table& table, std::size_t row, std::size_t column
 Centres read_centres(const std::string& path, std::size_t images) {
   const Table table = read_table(path);
   const std::size_t image_column = table.column("image");
-  const std::size_t x_column = table.column("x");
-  const std::size_t y_column = table.column("y");
+  // centres.csv says x and y; images.csv, symmetry.csv and truth.csv, which hold more, say centre_x and centre_y.
+  const bool long_names = std::find(table.columns.begin(), table.columns.end(), "centre_x") != table.columns.end();
+  const std::size_t x_column = table.column(long_names ? "centre_x" : "x");
+  const std::size_t y_column = table.column(long_names ? "centre_y" : "y");
   const auto status_place = std::find(table.columns.begin(), table.columns.end(), "status");
   const auto status_column = static_cast<std::size_t>(status_place - table.columns.begin());
 

@@ -32,9 +32,9 @@ class CentreFlags {
   std::string file_;
 };
 
-/// Reads a table with the columns image, x, y and, if there is one, status: images whose status is not `ok`, and images
-/// without a row, get their reason. Throws Error(bad_input): an image that the stack does not have, or that has two
-/// rows; a centre that is no number.
+/// Reads a table with the columns image, x, y (or centre_x, centre_y) and, if there is one, status: images whose status
+/// is not `ok`, and images without a row, get their reason. Throws Error(bad_input): an image that the stack does not
+/// have, or that has two rows; a centre that is no number.
 Centres read_centres(const std::string& path, std::size_t images);
 
 }  // namespace tambour::tools::analyse

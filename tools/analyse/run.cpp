@@ -48,6 +48,7 @@ int run(const Arguments& arguments, std::ostream& out, std::ostream& err) {
   options.test_symmetry = false;
   flags.study.apply(options);
   const Centres centres = flags.centres.resolve(*source, options.geometry.radius, session);
+  if (centres.file) session.refuse_as_output({*centres.file});
   options.preparation = flags.preparation.resolve(source->rows(), source->columns(), options.geometry.radius, session);
 
   const StackStudyPlan plan(options, source->rows(), source->columns(), session.executor());

@@ -2,6 +2,8 @@
 
 #include <algorithm>
 
+#include "tambour/error.hpp"
+
 namespace tambour::tools {
 
 void for_each_batch(const CoefficientReader& reader, std::string_view stage, Session& session,
@@ -20,6 +22,10 @@ void for_each_batch(const CoefficientReader& reader, std::string_view stage, Ses
     session.progress().advance(stage, first + count, reader.images());
   }
   stop_if_interrupted();
+}
+
+void require_images(const CoefficientReader& reader, const std::string& path) {
+  if (reader.images() == 0) throw Error(ErrorCode::bad_input, path + ": holds no image; allowed is one or more");
 }
 
 void name_skipped(const CoefficientBatch& batch, Session& session) {

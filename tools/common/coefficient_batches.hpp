@@ -30,6 +30,9 @@ struct CoefficientBatch {
 void for_each_batch(const CoefficientReader& reader, std::string_view stage, Session& session,
                     const std::function<void(const CoefficientBatch&)>& take);
 
+/// Throws Error(bad_input) for a file without images.
+void require_images(const CoefficientReader& reader, const std::string& path);
+
 /// Tells the session of the skipped images of a batch.
 void name_skipped(const CoefficientBatch& batch, Session& session);
 

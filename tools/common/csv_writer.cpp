@@ -22,18 +22,23 @@ std::string text_cell(const std::string& text) {
   return quoted + '"';
 }
 
+std::string csv_line(const std::vector<std::string>& cells) {
+  std::string line;
+  for (std::size_t i = 0; i < cells.size(); ++i) {
+    if (i > 0) line += ',';
+    line += cells[i];
+  }
+  return line + '\n';
+}
+
 void CsvWriter::comment(const std::string& text) {
   pending_ += "# ";
   for (const char c : text) pending_ += c == '\n' || c == '\r' ? ' ' : c;
   pending_ += '\n';
 }
 
-void CsvWriter::row(const std::vector<std::string>& cells) {
-  for (std::size_t i = 0; i < cells.size(); ++i) {
-    if (i > 0) pending_ += ',';
-    pending_ += cells[i];
-  }
-  pending_ += '\n';
+void CsvWriter::rows(const std::string& lines) {
+  pending_ += lines;
   if (pending_.size() > 1 << 16) flush();
 }
 

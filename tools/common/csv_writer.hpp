@@ -17,6 +17,9 @@ std::string cell(const std::optional<double>& number);
 /// mislead a reader.
 std::string text_cell(const std::string& text);
 
+/// One row of a table, with its line break.
+std::string csv_line(const std::vector<std::string>& cells);
+
 /// Writes a table beside its place; commit() renames it. Throws Error(cannot_write).
 class CsvWriter {
  public:
@@ -25,7 +28,9 @@ class CsvWriter {
   /// One line above the header, `# text`; line breaks in the text become spaces.
   void comment(const std::string& text);
   /// A row of cells made by cell() and text_cell(); the header is the first.
-  void row(const std::vector<std::string>& cells);
+  void row(const std::vector<std::string>& cells) { rows(csv_line(cells)); }
+  /// Rows made by csv_line(), so that they can be made in other threads.
+  void rows(const std::string& lines);
   void commit();
 
  private:

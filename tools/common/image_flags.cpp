@@ -37,6 +37,8 @@ std::unique_ptr<FileSource> ImageFlags::open(Session& session) const {
   if (channel_) options.channel = static_cast<int>(*channel_);
   options.pixel_size = pixel_size_of(pixel_size_, unit_);
   auto source = open_images(inputs_, options);
+  session.refuse_as_output(source->files());
+  for (std::string input : inputs_) session.refuse_as_output({input.substr(input.starts_with('@') ? 1 : 0)});
   for (const auto& remark : source->remarks()) session.remark(remark);
   const auto fits = [](std::ptrdiff_t side) { return smallest_side <= side && side <= largest_side; };
   if (!fits(source->rows()) || !fits(source->columns()))

@@ -30,7 +30,8 @@ void install_interrupt_handlers() {
 int interrupt_signal() noexcept { return arrived.load(); }
 
 void stop_if_interrupted() {
-  if (interrupt_signal() != 0) throw Error(ErrorCode::interrupted, "interrupted: no output was put in place");
+  if (interrupt_signal() != 0)
+    throw Error(ErrorCode::interrupted, "interrupted: nothing half-written was left in place");
 }
 
 void InterruptibleExecutor::run(std::size_t tasks, const Task& body) {

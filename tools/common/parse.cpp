@@ -19,7 +19,7 @@ namespace {
 
 template <class Number>
 bool read_whole(std::string_view text, Number& number) {
-  if (!text.empty() && text.front() == '+') text.remove_prefix(1);
+  if (text.size() > 1 && text.front() == '+' && text[1] != '-') text.remove_prefix(1);
   const auto [end, problem] = std::from_chars(text.data(), text.data() + text.size(), number);
   return problem == std::errc() && end == text.data() + text.size();
 }
@@ -44,7 +44,8 @@ std::pair<int, int> parse_range(const std::string& what, const std::string& text
   std::int64_t first = 0;
   std::int64_t last = 0;
   const bool fine = (parts.size() == 1 || parts.size() == 2) && read_whole(parts.front(), first) &&
-                    read_whole(parts.back(), last) && std::abs(first) <= limit && std::abs(last) <= limit;
+                    read_whole(parts.back(), last) && -limit <= first && first <= limit && -limit <= last &&
+                    last <= limit;
   if (!fine) refuse(what, text, "FIRST:LAST, two whole numbers such as 2:24");
   return {static_cast<int>(first), static_cast<int>(last)};
 }

@@ -11,6 +11,7 @@
 #include "common/csv_writer.hpp"
 #include "common/interrupt.hpp"
 #include "common/progress_bar.hpp"
+#include "common/same_file.hpp"
 #include "tambour/image_source.hpp"
 #include "tambour/provenance.hpp"
 
@@ -29,6 +30,10 @@ class Session {
   /// What a person should know: on standard error at once (unless --quiet) and in the JSON document.
   void remark(const std::string& sentence);
   const std::vector<std::string>& remarks() const noexcept { return remarks_; }
+  /// Throws Error(bad_input) when --out is one of the input files.
+  void refuse_as_output(const std::vector<std::string>& input_files) const {
+    refuse_inputs_as_outputs(input_files, {line_.out()});
+  }
   /// A line of the summary on standard output.
   void say(const std::string& line) { summary_.push_back(line); }
   /// An entry of `results` in the JSON document.

@@ -4,6 +4,7 @@
 #include <string>
 
 #include "common/command_line.hpp"
+#include "common/session.hpp"
 #include "tambour/symmetry.hpp"
 
 namespace tambour::tools {
@@ -12,10 +13,13 @@ namespace tambour::tools {
 class SymmetryFlags {
  public:
   void add_to(CommandLine& line);
-  SymmetryOptions resolve() const;
+  /// A default range that goes beyond the basis of `geometry` is shortened, with a remark.
+  SymmetryOptions resolve(const DiskGeometry& geometry, Session& session) const;
 
  private:
-  std::string folds_ = "2:24";
+  SymmetryOptions resolve() const;
+
+  std::string folds_;  ///< empty = the default
   double alpha_ = SymmetryOptions{}.alpha;
 };
 

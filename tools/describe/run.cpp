@@ -51,7 +51,9 @@ int run(const Arguments& arguments, std::ostream& out, std::ostream& err) {
   check_writable(line.out(), line.force());
   check_writable(sidecar_path, line.force());
 
+  session.refuse_as_output({flags.input});
   const CoefficientReader reader(flags.input);
+  require_images(reader, flags.input);
   const Descriptor descriptor(reader.basis(), options);
   const auto output = create_output(line.out(), reader.images(), descriptor.names(), session, line.force());
   std::vector<std::size_t> skipped;

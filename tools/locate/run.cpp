@@ -2,6 +2,7 @@
 
 #include <fmt/format.h>
 
+#include "common/centre_limits.hpp"
 #include "common/centre_rows.hpp"
 #include "common/geometry_flags.hpp"
 #include "common/image_flags.hpp"
@@ -29,29 +30,6 @@ struct Flags {
   }
 };
 
-/// Centres that may lie further out than was searched.
-class LimitWatch {
- public:
-  void see(const ImageStudy& study) {
-    if (study.status.ok() && study.centre.at_search_limit) images_.push_back(study.image);
-  }
-
-  void report(double search, Session& session) const {
-    session.result("at_search_limit", images_);
-    if (images_.empty()) return;
-    std::string first = fmt::format("{}", images_.front());
-    for (std::size_t i = 1; i < images_.size() && i < 10; ++i) first += fmt::format(", {}", images_[i]);
-    session.remark(
-        fmt::format("{} centre(s) lie on the border of the searched square of +-{:.6g} px and may lie beyond (image "
-                    "{}{}): a larger "
-                    "--search tells",
-                    images_.size(), search, first, images_.size() > 10 ? ", …" : ""));
-  }
-
- private:
-  std::vector<std::size_t> images_;
-};
-
 }  // namespace
 
 int run(const Arguments& arguments, std::ostream& out, std::ostream& err) {
@@ -74,7 +52,7 @@ int run(const Arguments& arguments, std::ostream& out, std::ostream& err) {
   CsvWriter table(line.out(), line.force());
   session.describe_in(table);
   write_centre_header(options, table);
-  LimitWatch limits;
+  CentreLimits limits(options.search, options.geometry.radius, source->rows(), source->columns());
   plan.run(*source, {}, {}, session.executor(), session.progress(), [&](const StudyBatch& batch) {
     for (const auto& study : batch.images) {
       table.row(centre_row(study));
@@ -85,7 +63,7 @@ int run(const Arguments& arguments, std::ostream& out, std::ostream& err) {
   stop_if_interrupted();
   table.commit();
 
-  limits.report(options.search, session);
+  limits.report(session);
   const std::size_t located = source->images() - session.skipped();
   session.wrote("centres", line.out());
   session.result("images", source->images());

@@ -55,10 +55,10 @@ struct Flags {
   GeneratorOptions resolve() const;
 };
 
-void require_at_least(const char* flag, double value, double lowest) {
-  if (!(value >= lowest))
+void require_within(const char* flag, double value, double lowest, double highest) {
+  if (!(value >= lowest && value <= highest))
     throw Error(ErrorCode::invalid_argument,
-                fmt::format("{} is {:.6g}; allowed is {:.6g} or more", flag, value, lowest));
+                fmt::format("{} is {:.6g}; allowed is {:.6g} to {:.6g}", flag, value, lowest, highest));
 }
 
 GeneratorOptions Flags::resolve() const {
@@ -77,11 +77,11 @@ GeneratorOptions Flags::resolve() const {
   options.mix = parse_mix(mix);
   options.noise = noise == "white" ? Noise::white : noise == "none" ? Noise::none : Noise::coloured;
   options.seed = static_cast<std::uint64_t>(seed);
-  require_at_least("--radius", options.radius, 4);
-  require_at_least("--snr", options.snr, 0);
-  require_at_least("--centre-spread", options.centre_spread, 0);
-  require_at_least("--gradient", options.gradient, 0);
-  require_at_least("--contaminant", options.contaminant, 0);
+  require_within("--radius", options.radius, 4, largest_side);
+  require_within("--snr", options.snr, 0, 1e6);
+  require_within("--centre-spread", options.centre_spread, 0, largest_side);
+  require_within("--gradient", options.gradient, 0, 1e6);
+  require_within("--contaminant", options.contaminant, 0, 1e6);
   return options;
 }
 

@@ -46,7 +46,9 @@ int run(const Arguments& arguments, std::ostream& out, std::ostream& err) {
   Session session(line, out, err);
   check_writable(line.out(), line.force());
 
+  session.refuse_as_output({flags.input});
   const CoefficientReader reader(flags.input);
+  require_images(reader, flags.input);
   const std::int64_t rings = flags.rings.value_or(0);
   const PowerOfImage power(reader.basis(), static_cast<int>(rings));
   CsvWriter table(line.out(), line.force());

@@ -84,7 +84,7 @@ std::vector<ReportGroup> make_groups(const std::string& coefficient_file, const 
     for (std::size_t i = 0; i < batch.size(); ++i) {
       const ImageRow& row = rows[batch.first + i];
       Group* group = group_of(groups, row);
-      if (group == nullptr) continue;
+      if (group == nullptr || (group->sum.empty() && group->shown.examples.size() >= most_examples)) continue;
       const auto angle = angles.find(row.image);
       const std::vector<Complex> aligned =
           turned(reader.basis(), batch.of(i), angle == angles.end() ? 0 : angle->second.angle);

@@ -72,15 +72,13 @@ void BatchOutputs::take(const StudyBatch& batch, Executor& executor) {
 }
 
 void BatchOutputs::write_orders(const StudyBatch& batch, Executor& executor) {
-  std::vector<std::vector<OrderPower>> spectra(batch.images.size());
-  executor.run(spectra.size(), [&](std::size_t i, int) {
-    if (batch.images[i].status.ok())
-      spectra[i] = rotational_spectrum(plan_.basis(), coefficients_of(batch, i), batch.images[i].noise);
+  std::vector<std::string> lines(batch.images.size());
+  executor.run(lines.size(), [&](std::size_t i, int) {
+    for (const OrderPower& order : batch.images[i].spectrum)
+      lines[i] += csv_line({std::to_string(batch.first + i), std::to_string(order.angular_order), cell(order.power),
+                            cell(order.se), cell(order.noise_power)});
   });
-  for (std::size_t i = 0; i < spectra.size(); ++i)
-    for (const OrderPower& order : spectra[i])
-      orders_.row({std::to_string(batch.first + i), std::to_string(order.angular_order), cell(order.power),
-                   cell(order.se), cell(order.noise_power)});
+  for (const std::string& image : lines) orders_.rows(image);
 }
 
 void BatchOutputs::write_descriptors(const StudyBatch& batch, Executor& executor) {

@@ -88,13 +88,13 @@ void ReportCollector::take(const StudyBatch& batch) {
           {study.centre.centre.x, study.centre.centre.y, std::sqrt(study.centre.var_x), std::sqrt(study.centre.var_y)});
     const auto row = static_cast<std::ptrdiff_t>(i);
     const std::span<const std::complex<double>> coefficients(batch.coefficients.row(row), plan_.basis().size());
-    take_spectrum(study, coefficients);
+    take_spectrum(study);
     take_pictures(study, batch.prepared[row], coefficients);
   }
 }
 
-void ReportCollector::take_spectrum(const ImageStudy& study, std::span<const std::complex<double>> coefficients) {
-  for (const OrderPower& order : rotational_spectrum(plan_.basis(), coefficients, study.noise)) {
+void ReportCollector::take_spectrum(const ImageStudy& study) {
+  for (const OrderPower& order : study.spectrum) {
     power_[order.angular_order] += order.power;
     power_squares_[order.angular_order] += order.power * order.power;
     noise_power_[order.angular_order] += order.noise_power;

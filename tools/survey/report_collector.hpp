@@ -27,7 +27,7 @@ class ReportCollector {
   };
 
   bool is_sample(std::size_t image, std::size_t samples) const;
-  void take_spectrum(const ImageStudy& study, std::span<const std::complex<double>> coefficients);
+  void take_spectrum(const ImageStudy& study);
   void take_pictures(const ImageStudy& study, ImageView<const double> prepared,
                      std::span<const std::complex<double>> coefficients);
 

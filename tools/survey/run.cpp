@@ -5,6 +5,7 @@
 
 #include <ctime>
 
+#include "common/centre_limits.hpp"
 #include "common/coefficient_sink.hpp"
 #include "common/geometry_flags.hpp"
 #include "common/image_flags.hpp"
@@ -73,12 +74,13 @@ int run(const Arguments& arguments, std::ostream& out, std::ostream& err) {
 
   const auto source = flags.images.open(session);
   StackStudyOptions options;
-  options.symmetry = flags.symmetry.resolve();
   options.geometry = flags.geometry.resolve(*source, flags.study.search(), session);
+  options.symmetry = flags.symmetry.resolve(options.geometry, session);
   flags.study.apply(options);
   require_room_to_search(*source, options.geometry.radius);
   options.preparation = flags.preparation.resolve(source->rows(), source->columns(), options.geometry.radius, session);
   const SurveyPaths paths(line.out());
+  refuse_inputs_as_outputs(source->files(), paths.all());
   prepare_folder(line.out(), paths, line.force());
 
   session.progress().advance("plan", 0, 1);
@@ -86,6 +88,7 @@ int run(const Arguments& arguments, std::ostream& out, std::ostream& err) {
   BatchOutputs outputs(paths, plan, header_of(plan, *source, session), source->images(), session, line.force());
   ReportCollector collector(plan, source->images());
   std::vector<ImageRow> rows;
+  CentreLimits limits(options.search, options.geometry.radius, source->rows(), source->columns());
   PatternAngles pattern_angles(plan.basis());
   plan.run(*source, {}, {}, session.executor(), session.progress(), [&](const StudyBatch& batch) {
     outputs.take(batch, session.executor());
@@ -93,12 +96,14 @@ int run(const Arguments& arguments, std::ostream& out, std::ostream& err) {
     for (std::size_t i = 0; i < batch.images.size(); ++i) {
       const ImageStudy& study = batch.images[i];
       rows.push_back(row_of(study));
+      limits.see(study);
       if (study.status.ok())
         pattern_angles.add(study, batch.coefficients.row(static_cast<std::ptrdiff_t>(i)));
       else
         session.skip(study.image, study.source, study.status.reason);
     }
   });
+  limits.report(session);
   const Provenance provenance = session.provenance(source->files());
   const auto angles = pattern_angles.angles();
   CsvWriter images(paths.images, line.force());
@@ -118,7 +123,7 @@ int run(const Arguments& arguments, std::ostream& out, std::ostream& err) {
   report.columns = source->columns();
   report.pixel_size = source->pixel_size();
   report.radius = options.geometry.radius;
-  report.search = options.search;
+  report.search = limits.searched();
   collector.fill(report);
   report.groups = make_groups(paths.coefficients, plan, rows, angles, session);
   OutputFile page(paths.report, line.force());

@@ -2,6 +2,7 @@
 
 #include <fmt/format.h>
 
+#include "common/centre_limits.hpp"
 #include "common/geometry_flags.hpp"
 #include "common/image_flags.hpp"
 #include "common/image_rows.hpp"
@@ -64,9 +65,10 @@ int run(const Arguments& arguments, std::ostream& out, std::ostream& err) {
   if (flags.stack) check_writable(stack_path, line.force());
 
   StackStudyOptions options;
-  options.symmetry = flags.symmetry.resolve();
   const auto source = flags.images.open(session);
+  if (flags.stack) refuse_inputs_as_outputs(source->files(), {stack_path});
   options.geometry = flags.geometry.resolve(*source, flags.study.search(), session);
+  options.symmetry = flags.symmetry.resolve(options.geometry, session);
   flags.study.apply(options);
   require_room_to_search(*source, options.geometry.radius);
   options.preparation = flags.preparation.resolve(source->rows(), source->columns(), options.geometry.radius, session);
@@ -75,12 +77,14 @@ int run(const Arguments& arguments, std::ostream& out, std::ostream& err) {
   CsvWriter table(line.out(), line.force());
   session.describe_in(table);
   std::vector<ImageRow> rows;
+  CentreLimits limits(options.search, options.geometry.radius, source->rows(), source->columns());
   PatternAngles angles(plan.basis());
   StackSum sum(plan);
   plan.run(*source, {}, {}, session.executor(), session.progress(), [&](const StudyBatch& batch) {
     for (std::size_t i = 0; i < batch.images.size(); ++i) {
       const ImageStudy& study = batch.images[i];
       rows.push_back(row_of(study));
+      limits.see(study);
       if (!study.status.ok()) {
         session.skip(study.image, study.source, study.status.reason);
         continue;
@@ -90,6 +94,7 @@ int run(const Arguments& arguments, std::ostream& out, std::ostream& err) {
       if (flags.stack) sum.add(study, {coefficients, plan.basis().size()});
     }
   });
+  limits.report(session);
   write_image_table(rows, angles.angles(), options, table);
   std::optional<SymmetryEvidence> of_stack;
   if (flags.stack) of_stack = sum.evaluate(session.executor());

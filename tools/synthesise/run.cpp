@@ -49,7 +49,9 @@ int run(const Arguments& arguments, std::ostream& out, std::ostream& err) {
   Session session(line, out, err);
   check_writable(line.out(), line.force());
 
+  session.refuse_as_output({flags.input});
   const CoefficientReader reader(flags.input);
+  require_images(reader, flags.input);
   const CoefficientHeader& header = reader.header();
   if (flags.add_background) require_restorable(flags.input, header.preparation);
   const StackShape shape{reader.images(), header.rows, header.columns, header.pixel_size,

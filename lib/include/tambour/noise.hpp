@@ -46,7 +46,7 @@ Shells make_shells(const DiskBasis& basis);
 /// over rings in q that match the shells, smoothed over neighbours. Where the frame holds too little outside (sum w^2
 /// under 200), from the terms with n > 0.8 lambda instead, which an object inside 0.8 R does not reach. Measured on
 /// white noise, R = 24, box 64: bias under 0.03, standard deviation 0.11 of S per image. docs/accuracy.md. Immutable,
-/// thread-safe with one Workspace per thread.
+/// thread-safe.
 class NoiseEstimator {
  public:
   NoiseEstimator(const DiskBasis& basis, std::ptrdiff_t rows, std::ptrdiff_t columns);

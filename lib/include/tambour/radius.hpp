@@ -26,7 +26,7 @@ struct RadiusEstimate {
 /// the frame's middle.
 ///
 /// Throws Error(bad_input) when no image can be read or the frame is too small for any disk (a side under 2 (4 +
-/// search) + 1 px).
+/// search) px), Error(invalid_argument) when search is negative.
 RadiusEstimate estimate_radius(const ImageSource& source, double search, Executor& executor);
 
 }  // namespace tambour

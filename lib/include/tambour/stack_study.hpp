@@ -29,7 +29,6 @@ struct StackStudyOptions {
   PreparationOptions preparation;
   bool find_centres = true;  ///< else the given centres or the frame's middle are used
   double search = 4;         ///< see CentreOptions
-  bool expand = true;        ///< coefficients at the centre; needed by everything below
   bool double_precision = false;
   double tolerance = 0;  ///< see DiskTransformOptions
   bool test_symmetry = true;
@@ -48,7 +47,8 @@ struct ImageStudy {
   CentreEstimate centre;
   NoiseSpectrum noise;
   double noise_sd = 0;
-  double signal_to_noise = 0;  ///< variance of the signal inside the disk / variance of the noise; at least 0
+  std::vector<OrderPower> spectrum;  ///< rotational power, noise subtracted
+  double signal_to_noise = 0;        ///< variance of the signal inside the disk / variance of the noise; at least 0
   std::optional<SymmetryEvidence> evidence;
 };
 

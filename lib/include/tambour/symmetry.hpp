@@ -53,7 +53,7 @@ struct SymmetryEvidence {
 /// lambda_max))^2 / 2), h_jN the share of shell j's energy in orders that are multiples of N; averaged over a grid of A
 /// and L. The scale of each shell is integrated out, so the null law does not depend on the spectrum. Orders n >= 2
 /// only. Immutable, thread-safe. Building draws the null law (some seconds at R = 40 on one core; give an executor).
-/// Throws Error(invalid_argument) on bad options, or when no fold has an order in the basis. Source:
+/// Throws Error(invalid_argument) on bad options, or when the highest fold exceeds the basis' highest order. Source:
 /// docs/mathematics.md.
 class SymmetryTest {
  public:

@@ -3,6 +3,7 @@
 #include <condition_variable>
 #include <exception>
 #include <mutex>
+#include <system_error>
 #include <thread>
 #include <vector>
 
@@ -22,6 +23,15 @@ struct ThreadPool::State {
   std::exception_ptr failure;
   bool closing = false;
   std::vector<std::thread> threads;
+
+  void close() {
+    {
+      const std::lock_guard lock(mutex);
+      closing = true;
+    }
+    wake.notify_all();
+    for (auto& thread : threads) thread.join();
+  }
 
   void work(int worker) {
     std::unique_lock lock(mutex);
@@ -51,18 +61,17 @@ struct ThreadPool::State {
 
 ThreadPool::ThreadPool(int threads) : state_(std::make_unique<State>()) {
   require(threads >= 1 && threads <= 4096, "threads", threads, "1 to 4096");
-  for (int worker = 0; worker < threads; ++worker)
-    state_->threads.emplace_back([state = state_.get(), worker] { state->work(worker); });
+  try {
+    for (int worker = 0; worker < threads; ++worker)
+      state_->threads.emplace_back([state = state_.get(), worker] { state->work(worker); });
+  } catch (const std::system_error& problem) {
+    state_->close();
+    throw Error(ErrorCode::invalid_argument, fmt::format("threads is {}; the system gives no more than {} ({})",
+                                                         threads, state_->threads.size(), problem.what()));
+  }
 }
 
-ThreadPool::~ThreadPool() {
-  {
-    const std::lock_guard lock(state_->mutex);
-    state_->closing = true;
-  }
-  state_->wake.notify_all();
-  for (auto& thread : state_->threads) thread.join();
-}
+ThreadPool::~ThreadPool() { state_->close(); }
 
 int ThreadPool::workers() const noexcept { return static_cast<int>(state_->threads.size()); }
 

@@ -15,9 +15,9 @@ using std::numbers::pi;
 
 double kaiser_bessel(double shape, double x) {
   const double inside = 1 - x * x;
-  const double argument = shape * std::sqrt(std::abs(inside));
-  if (inside >= 0) return bessel_i0_scaled(argument) * std::exp(argument - shape) / bessel_i0_scaled(shape);
-  return 0;
+  if (inside < 0) return 0;
+  const double argument = shape * std::sqrt(inside);
+  return bessel_i0_scaled(argument) * std::exp(argument - shape) / bessel_i0_scaled(shape);
 }
 
 }  // namespace

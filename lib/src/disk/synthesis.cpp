@@ -39,7 +39,7 @@ Synthesis<T>::Synthesis(const DiskBasis& basis, double tolerance)
       spacing_(1 / (oversampling * basis.geometry().bandlimit)),
       rings_(static_cast<int>(std::ceil(radius_ / spacing_ + kernel_.width() / 2.0 + 1))),
       angles_(fourier::next_fast_size(2 * oversampling * (basis.max_order() + 1), 2)),
-      margin_(kernel_.width()),
+      margin_(kernel_.width() / 2 + 1),
       padded_stride_(static_cast<int>(aligned_count<T>(angles_ + 2 * margin_))),
       spectrum_stride_(static_cast<int>(aligned_count<std::complex<T>>(angles_ / 2 + 1))),
       ring_stride_(static_cast<int>(aligned_count<T>(angles_))),
@@ -133,7 +133,8 @@ void Synthesis<T>::pad(Scratch& scratch) const {
     const int turn = j < 0 ? angles_ / 2 : 0;
     const T* from = scratch.rings.data() + static_cast<std::size_t>(ring) * ring_stride_;
     T* to = scratch.padded.data() + static_cast<std::size_t>(j + margin_) * padded_stride_;
-    for (int a = -margin_; a < angles_ + margin_; ++a) to[a + margin_] = from[(a + turn + angles_) % angles_];
+    for (int a = -margin_; a < angles_ + margin_; ++a)
+      to[a + margin_] = from[((a + turn) % angles_ + angles_) % angles_];
   }
 }
 

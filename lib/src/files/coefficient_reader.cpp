@@ -40,6 +40,17 @@ void check_terms(hid_t file, const DiskBasis& basis) {
                       orders[i], indices[i], roots[i], terms[i].angular_order, terms[i].radial_index, terms[i].root));
 }
 
+/// Nothing of an analysed image may be other than a number.
+void check_image(std::size_t image, const CoefficientRecord& record, const std::complex<double>* coefficients,
+                 std::ptrdiff_t terms) {
+  if (!record.status.ok()) return;
+  if (!std::isfinite(record.centre.x) || !std::isfinite(record.centre.y))
+    throw Hdf5Failure(fmt::format("the centre of image {} is not finite", image));
+  for (std::ptrdiff_t i = 0; i < terms; ++i)
+    if (!std::isfinite(coefficients[i].real()) || !std::isfinite(coefficients[i].imag()))
+      throw Hdf5Failure(fmt::format("image {}: coefficient {} is not finite", image, i));
+}
+
 }  // namespace
 
 struct CoefficientReader::State {
@@ -51,6 +62,9 @@ struct CoefficientReader::State {
       file = open_hdf5_file(path);
       header = layout::read_header(file.get());
       if (const auto problems = header.geometry.problems(); !problems.empty()) throw Hdf5Failure(problems[0]);
+      if (static_cast<double>(std::min(header.rows, header.columns)) < 2 * header.geometry.radius)
+        throw Hdf5Failure(fmt::format("a frame of {} x {} px (columns x rows) holds no disk of radius {} px",
+                                      header.columns, header.rows, header.geometry.radius));
       basis.emplace(header.geometry);
       check_terms(file.get(), *basis);
       open_columns(length);
@@ -178,7 +192,11 @@ void CoefficientReader::read(std::size_t first, MatrixView<std::complex<double>>
   const Hdf5Lock lock;
   try {
     state_->read_coefficients(first, out);
-    if (records != nullptr) state_->read_records(first, count, *records);
+    std::vector<CoefficientRecord> checked;
+    state_->read_records(first, count, checked);
+    for (std::size_t i = 0; i < count; ++i)
+      check_image(first + i, checked[i], out.row(static_cast<std::ptrdiff_t>(i)), out.columns);
+    if (records != nullptr) *records = std::move(checked);
   } catch (const Hdf5Failure& failure) {
     refuse_input("{}: images {} to {}: {}", state_->name, first, first + count - 1, failure.what());
   }

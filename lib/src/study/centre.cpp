@@ -71,6 +71,12 @@ struct CentreFinder::Data {
 
   std::ptrdiff_t half() const { return options.columns / 2 + 1; }
 
+  void check_shape(ImageView<const double> image) const {
+    require(image.rows == options.rows && image.columns == options.columns, "shape of the image",
+            fmt::format("{} x {}", image.rows, image.columns),
+            fmt::format("{} x {}, as planned", options.rows, options.columns));
+  }
+
   AlignedBuffer<Complex> transform(ImageView<const double> image) const {
     AlignedBuffer<double> copy(options.rows * options.columns);
     for (std::ptrdiff_t y = 0; y < options.rows; ++y)
@@ -136,8 +142,7 @@ CentreFinder::~CentreFinder() = default;
 CentreEstimate CentreFinder::find(ImageView<const double> image) const {
   const Data& d = *data_;
   const std::ptrdiff_t rows = d.options.rows, columns = d.options.columns;
-  require(image.rows == rows && image.columns == columns, "shape of the image",
-          fmt::format("{} x {}", image.rows, image.columns), fmt::format("{} x {}, as planned", rows, columns));
+  d.check_shape(image);
   const AlignedBuffer<Complex> spectrum = d.transform(image);
   AlignedBuffer<Complex> product(spectrum.size());
   AlignedBuffer<double> map(rows * columns);
@@ -176,6 +181,7 @@ CentreEstimate CentreFinder::find(ImageView<const double> image) const {
 void CentreFinder::add_covariance(CentreEstimate& estimate, ImageView<const double> image,
                                   const NoiseSpectrum& noise) const {
   const Data& d = *data_;
+  d.check_shape(image);
   const AlignedBuffer<Complex> spectrum = d.transform(image);
   const std::ptrdiff_t half = d.half();
   const std::size_t terms = d.root.size();

@@ -3,7 +3,6 @@
 #include <algorithm>
 #include <cmath>
 #include <iterator>
-#include <limits>
 
 namespace tambour::study {
 namespace {
@@ -64,10 +63,6 @@ void Evidence::ln_bayes_factors(std::span<const double> energies, std::span<doub
     for (int n = 0; n < orders_; ++n) total[j] += energies[j * orders_ + n];
   }
   for (int fold = 0; fold < folds_; ++fold) {
-    if (multiples_[fold].empty()) {
-      out[fold] = -std::numeric_limits<double>::infinity();
-      continue;
-    }
     for (std::size_t j = 0; j < shells_; ++j) {
       double inside = 0;
       for (const std::size_t n : multiples_[fold]) inside += energies[j * orders_ + n];

@@ -1,11 +1,14 @@
 #include "tambour/noise.hpp"
 
+#include <fmt/format.h>
+
 #include <algorithm>
 #include <cmath>
 #include <complex>
 #include <limits>
 #include <numbers>
 
+#include "base/check.hpp"
 #include "fourier/buffer.hpp"
 #include "fourier/plans.hpp"
 
@@ -142,11 +145,21 @@ struct NoiseEstimator::Data {
     return from_power(std::move(power), std::move(count), energies);
   }
 
+  /// Largest share up to free_order_share for which some order n > share * lambda exists: small bases have none above
+  /// it.
+  double order_share() const {
+    double largest = 0;
+    for (std::size_t i = 0; i < basis.size(); ++i)
+      if (shells.of_term[i] >= 0) largest = std::max(largest, basis.terms()[i].angular_order / basis.terms()[i].root);
+    return std::min(free_order_share, 0.9 * largest);
+  }
+
   NoiseSpectrum from_free_orders(const std::vector<double>& energies) const {
+    const double share = order_share();
     std::vector<double> power(shells.size(), 0.0), count(shells.size(), 0.0);
     const std::span<const Term> terms = basis.terms();
     for (std::size_t i = 0; i < terms.size(); ++i) {
-      if (shells.of_term[i] < 0 || terms[i].angular_order <= free_order_share * terms[i].root) continue;
+      if (shells.of_term[i] < 0 || terms[i].angular_order <= share * terms[i].root) continue;
       power[shells.of_term[i]] += energies[i];
       count[shells.of_term[i]] += 2;
     }
@@ -159,7 +172,8 @@ NoiseEstimator::NoiseEstimator(const DiskBasis& basis, std::ptrdiff_t rows, std:
             rows,  columns,
             false, fourier::ImageFft<double>(static_cast<int>(rows), static_cast<int>(columns)),
             {}};
-  data.outside = data.sum_of_squared_weights(frame_middle(rows, columns)) >= least_weight;
+  data.outside =
+      data.sum_of_squared_weights(frame_middle(rows, columns)) >= least_weight && basis.root_limit() > 2 * lowest_root;
   const auto frequency = [](std::ptrdiff_t i, std::ptrdiff_t n) {
     return 2 * pi * static_cast<double>(2 * i <= n ? i : i - n) / static_cast<double>(n);
   };
@@ -182,6 +196,11 @@ const Shells& NoiseEstimator::shells() const noexcept { return data_->shells; }
 
 NoiseSpectrum NoiseEstimator::estimate(ImageView<const double> image, Centre centre,
                                        const std::vector<double>& energies) const {
+  require(image.rows == data_->rows && image.columns == data_->columns, "shape of the image",
+          fmt::format("{} x {}", image.rows, image.columns),
+          fmt::format("{} x {}, as planned", data_->rows, data_->columns));
+  require(energies.size() == data_->basis.size(), "number of energies", energies.size(),
+          fmt::format("{}, one per term", data_->basis.size()));
   return data_->outside ? data_->from_outside(image, centre, energies) : data_->from_free_orders(energies);
 }
 

@@ -13,6 +13,7 @@ namespace {
 
 constexpr double outer_share = 1.3;  // of R: where the ring ends on which the background is fitted
 constexpr std::ptrdiff_t fewest_pixels = 20;
+constexpr double largest_magnitude = 1e100;  // its fourth power is a double: variances of energies stay finite
 
 /// 1, u, v, u^2, u v, v^2.
 std::array<double, 6> monomials(double u, double v) { return {1, u, v, u * u, u * v, v * v}; }
@@ -54,6 +55,10 @@ ImageStatus check_pixels(ImageView<const double> image) {
     }
   }
   if (lowest == highest) return {fmt::format("every pixel is {:.6g}; a constant image holds no structure", lowest)};
+  const double largest = std::max(std::abs(lowest), std::abs(highest));
+  if (largest > largest_magnitude || largest < 1 / largest_magnitude)
+    return {fmt::format("the largest pixel is {:.6g} in size; allowed is {:g} to {:g}", largest, 1 / largest_magnitude,
+                        largest_magnitude)};
   return {};
 }
 

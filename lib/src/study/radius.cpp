@@ -12,11 +12,12 @@ namespace tambour {
 namespace {
 
 constexpr std::size_t most_images = 256;
-constexpr double faded = 0.05;       // of the largest excess
-constexpr double margin = 3;         // px for the objects' own offsets
-constexpr double smallest = 4;       // px
-constexpr std::size_t rim_bins = 3;  // px of radius that tell the rim's level
-constexpr double least_errors = 4;   // standard errors that make an excess real
+constexpr double faded = 0.05;           // of the largest excess
+constexpr double margin = 3;             // px for the objects' own offsets
+constexpr double smallest = 4;           // px
+constexpr double largest_radius = 1000;  // px, as DiskGeometry allows
+constexpr std::size_t rim_bins = 3;      // px of radius that tell the rim's level
+constexpr double least_errors = 4;       // standard errors that make an excess real
 
 /// Per pixel of radius: count, and sums of the values and of their squares.
 struct Profile {
@@ -58,7 +59,8 @@ std::vector<double> deviation(const Profile& profile) {
 
 RadiusEstimate estimate_radius(const ImageSource& source, double search, Executor& executor) {
   const std::ptrdiff_t rows = source.rows(), columns = source.columns();
-  const double room = std::floor(static_cast<double>(std::min(rows, columns)) / 2 - search);
+  require(search >= 0, "search", search, "0 px or more");
+  const double room = std::min(std::floor(static_cast<double>(std::min(rows, columns)) / 2 - search), largest_radius);
   if (room < smallest)
     throw Error(ErrorCode::bad_input, fmt::format("{}: a frame of {} x {} px (columns x rows) leaves no disk of {} px "
                                                   "radius with {} px to search around its middle",

@@ -117,6 +117,8 @@ std::vector<std::vector<OrderPower>> RingSpectrum::compute(std::span<const std::
                                                            const NoiseSpectrum& noise) const {
   const DiskBasis& basis = data_->basis;
   check_size(basis, coefficients.size());
+  std::vector<double> noise_of_term;  // of a_k per real degree of freedom: v S
+  for (const Term& term : basis.terms()) noise_of_term.push_back(noise.at(term.root) * term.white_noise_gain);
   std::vector<std::vector<OrderPower>> result;
   for (const auto& orders : data_->overlap) {
     auto& spectrum = result.emplace_back();
@@ -129,12 +131,12 @@ std::vector<std::vector<OrderPower>> RingSpectrum::compute(std::span<const std::
       double signal_variance = 0, floor_variance = 0;
       // Noise of a_k per real degree of freedom: v S, and d |a|^2 is the energy of both signs of n.
       for (std::size_t k = 0; k < count; ++k) {
-        const double noise_k = noise.at(terms[k].root) * terms[k].white_noise_gain;
+        const double noise_k = noise_of_term[begin + k];
         order.noise_power += d * g[k * count + k] * noise_k;
         std::complex<double> filtered = 0;
         for (std::size_t l = 0; l < count; ++l) {
           filtered += g[k * count + l] * coefficients[begin + l];
-          const double noise_l = noise.at(terms[l].root) * terms[l].white_noise_gain;
+          const double noise_l = noise_of_term[begin + l];
           floor_variance += 2 * d * g[k * count + l] * g[k * count + l] * noise_k * noise_l;
         }
         order.power += d * (std::conj(coefficients[begin + k]) * filtered).real();

@@ -14,6 +14,7 @@ namespace {
 using std::numbers::pi;
 
 constexpr std::size_t images_per_worker = 16;
+constexpr double least_single_range = 1e-5;  // of the largest pixel; single precision keeps 6e-8
 
 /// Mean of the expansion over the disk. Only order 0 has one: the integral of psi_0k is 2 sqrt(pi) R (-1)^{k-1} /
 /// lambda for a Dirichlet edge, and for a Neumann edge 0 but for the constant.
@@ -31,12 +32,22 @@ double disk_mean(const DiskBasis& basis, std::span<const std::complex<double>> c
 
 /// Variance of the signal inside the disk over the variance of the noise per pixel, at least 0.
 double signal_to_noise(const DiskBasis& basis, std::span<const std::complex<double>> coefficients,
-                       const NoiseSpectrum& noise, double noise_sd) {
+                       const std::vector<OrderPower>& spectrum, double noise_sd) {
   const double area = pi * basis.radius() * basis.radius();
   double power = 0;
-  for (const OrderPower& order : rotational_spectrum(basis, coefficients, noise)) power += order.power;
+  for (const OrderPower& order : spectrum) power += order.power;
   const double mean = disk_mean(basis, coefficients);
   return noise_sd > 0 ? std::max((power / area - mean * mean) / (noise_sd * noise_sd), 0.0) : 0;
+}
+
+std::pair<double, double> pixel_range(ImageView<const double> image) {
+  double lowest = image(0, 0), highest = lowest;
+  for (std::ptrdiff_t y = 0; y < image.rows; ++y) {
+    const auto [low, high] = std::minmax_element(image.row(y), image.row(y) + image.columns);
+    lowest = std::min(lowest, *low);
+    highest = std::max(highest, *high);
+  }
+  return {lowest, highest};
 }
 
 }  // namespace
@@ -104,12 +115,22 @@ struct StackStudyPlan::Data {
                     *worker.fine);
       return status;
     }
+    const auto [lowest, highest] = pixel_range(image);
+    const double largest = std::max(std::abs(lowest), std::abs(highest));
+    if (highest - lowest < least_single_range * largest)
+      return {
+          fmt::format("pixels from {:.9g} to {:.9g} differ by less than {:g} of their size; single precision cannot "
+                      "hold that: ask for double, or subtract a background",
+                      lowest, highest, least_single_range)};
+    // A power of two near the largest pixel keeps floats from over- and underflow and changes no bit of the result.
+    const double unit = largest > 0 ? std::exp2(std::floor(std::log2(largest))) : 1;
     for (std::ptrdiff_t y = 0; y < rows; ++y)
       std::transform(image.row(y), image.row(y) + columns, worker.image.begin() + y * columns,
-                     [](double value) { return static_cast<float>(value); });
+                     [unit](double value) { return static_cast<float>(value / unit); });
     coarse->analyse({worker.image.data(), 1, rows, columns}, {&centre, 1}, {worker.coefficients.data(), 1, terms},
                     {&status, 1}, *worker.coarse);
-    std::copy(worker.coefficients.begin(), worker.coefficients.end(), out);
+    std::transform(worker.coefficients.begin(), worker.coefficients.end(), out,
+                   [unit](std::complex<float> value) { return unit * std::complex<double>(value); });
     return status;
   }
 
@@ -129,7 +150,8 @@ struct StackStudyPlan::Data {
     const std::vector<double> energies = raw_energies(basis, a);
     result.noise = noise_estimator.estimate(image, result.centre.centre, energies);
     result.noise_sd = result.noise.sd(basis.root_limit());
-    result.signal_to_noise = signal_to_noise(basis, a, result.noise, result.noise_sd);
+    result.spectrum = rotational_spectrum(basis, a, result.noise);
+    result.signal_to_noise = signal_to_noise(basis, a, result.spectrum, result.noise_sd);
     if (centre_finder) centre_finder->add_covariance(result.centre, image, result.noise);
     if (symmetry_test) result.evidence = symmetry_test->evaluate(symmetry_test->whitened(energies, result.noise));
   }
