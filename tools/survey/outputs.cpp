@@ -91,12 +91,22 @@ void BatchOutputs::write_descriptors(const StudyBatch& batch, Executor& executor
       {values.data(), static_cast<std::ptrdiff_t>(batch.images.size()), static_cast<std::ptrdiff_t>(size)});
 }
 
-void BatchOutputs::finish(const Provenance& provenance) {
+BatchOutputs::~BatchOutputs() {
+  std::error_code ignored;
+  if (coefficients_alone_) std::filesystem::remove(paths_.coefficients, ignored);
+}
+
+void BatchOutputs::finish_coefficients(const Provenance& provenance) {
+  coefficients_.finish(provenance);
+  coefficients_alone_ = true;
+}
+
+void BatchOutputs::finish_tables(const Provenance& provenance) {
   OutputFile layout(paths_.descriptor_layout, overwrite_);
   layout.write(layout_text(plan_.options().geometry, images_, descriptor_, provenance, skipped_));
   centres_.commit();
+  coefficients_alone_ = false;
   orders_.commit();
-  coefficients_.finish(provenance);
   descriptors_->finish();
   layout.commit();
 }

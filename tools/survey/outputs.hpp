@@ -29,14 +29,20 @@ struct SurveyPaths {
 /// Throws Error(cannot_write): a file in its place, read-only, or files of an earlier survey without `overwrite`.
 void prepare_folder(const std::string& folder, const SurveyPaths& paths, bool overwrite);
 
-/// Writes centres, orders, coefficients and descriptors while the batches pass by; finish() puts them in place.
+/// Writes centres, orders, coefficients and descriptors while the batches pass by. The report reads the coefficients
+/// once more, so they are put in place first, and taken away again when the rest does not follow.
 class BatchOutputs {
  public:
   BatchOutputs(const SurveyPaths& paths, const StackStudyPlan& plan, const CoefficientHeader& header,
                std::size_t images, const Session& session, bool overwrite);
 
   void take(const StudyBatch& batch, Executor& executor);
-  void finish(const Provenance& provenance);
+  ~BatchOutputs();
+  BatchOutputs(const BatchOutputs&) = delete;
+  BatchOutputs& operator=(const BatchOutputs&) = delete;
+
+  void finish_coefficients(const Provenance& provenance);
+  void finish_tables(const Provenance& provenance);
 
  private:
   void write_orders(const StudyBatch& batch, Executor& executor);
@@ -51,6 +57,7 @@ class BatchOutputs {
   CoefficientSink coefficients_;
   std::unique_ptr<MatrixWriter> descriptors_;
   std::vector<std::size_t> skipped_;
+  bool coefficients_alone_ = false;  // in place, and nothing else yet
 };
 
 }  // namespace tambour::tools::survey

@@ -110,8 +110,7 @@ int run(const Arguments& arguments, std::ostream& out, std::ostream& err) {
   session.describe_in(images);
   write_image_table(rows, angles, options, images);
   stop_if_interrupted();
-  outputs.finish(provenance);
-  images.commit();
+  outputs.finish_coefficients(provenance);
 
   ReportData report;
   report.title = flags.title;
@@ -128,6 +127,8 @@ int run(const Arguments& arguments, std::ostream& out, std::ostream& err) {
   report.groups = make_groups(paths.coefficients, plan, rows, angles, session);
   OutputFile page(paths.report, line.force());
   page.write(render_report(report));
+  outputs.finish_tables(provenance);
+  images.commit();
   page.commit();
 
   session.wrote("images", paths.images);
