@@ -151,6 +151,7 @@ void DiskTransform<T>::analyse(StackView<const T> images, std::span<const Centre
           fmt::format("{}, one per image", images.images));
   const Centre middle = frame_middle(images.rows, images.columns);
   std::vector<Workspace> workspaces;
+  workspaces.reserve(executor.workers());
   for (int worker = 0; worker < executor.workers(); ++worker) workspaces.push_back(make_workspace());
   executor.run(images.images, [&](std::size_t i, int worker) {
     analyse_one(images[i], centres.empty() ? middle : centres[i], coefficients.row(i), statuses[i], workspaces[worker]);
@@ -173,6 +174,7 @@ void DiskTransform<T>::synthesise(MatrixView<const Complex> coefficients, std::s
   check_shapes(images.images, images.rows, images.columns, centres.size(), coefficients.rows, coefficients.columns);
   const Centre middle = frame_middle(images.rows, images.columns);
   std::vector<Workspace> workspaces;
+  workspaces.reserve(executor.workers());
   for (int worker = 0; worker < executor.workers(); ++worker) workspaces.push_back(make_workspace());
   executor.run(images.images, [&](std::size_t i, int worker) {
     plan_->synthesis.run(coefficients.row(i), centres.empty() ? middle : centres[i], images[i],
