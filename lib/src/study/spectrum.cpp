@@ -18,8 +18,6 @@ const double shell_width = std::numbers::pi;
 /// Relative variance that the error of the noise spectrum adds to a sum over several shells.
 double shared_error(double shells) { return noise_spectrum_error * noise_spectrum_error / std::max(shells / 2, 1.0); }
 
-double degrees(const Term& term) { return term.angular_order == 0 ? 1 : 2; }
-
 /// Shells that the terms of one order meet.
 double shells_met(std::span<const Term> terms) {
   double count = 0, last = -1;
@@ -43,7 +41,7 @@ std::vector<double> raw_energies(const DiskBasis& basis, std::span<const std::co
   energies.reserve(basis.size());
   for (std::size_t i = 0; i < basis.size(); ++i) {
     const Term& term = basis.terms()[i];
-    energies.push_back(degrees(term) * std::norm(coefficients[i]) / term.white_noise_gain);
+    energies.push_back(sign_weight(term) * std::norm(coefficients[i]) / term.white_noise_gain);
   }
   return energies;
 }
@@ -57,7 +55,7 @@ std::vector<OrderPower> rotational_spectrum(const DiskBasis& basis, std::span<co
     OrderPower order{.angular_order = n};
     double signal_variance = 0, floor_variance = 0;
     for (std::size_t k = 0; k < terms.size(); ++k) {
-      const double e = energies[basis.order_begin(n) + k], d = degrees(terms[k]), s = noise.at(terms[k].root);
+      const double e = energies[basis.order_begin(n) + k], d = sign_weight(terms[k]), s = noise.at(terms[k].root);
       order.power += e - d * s;
       order.noise_power += d * s;
       signal_variance += 4 * s * e - 2 * d * s * s;
